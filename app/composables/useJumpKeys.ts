@@ -19,6 +19,6 @@ export function useJumpKeys(jump: (letter: string) => boolean) {
     if (letter === 'g') armedUntil = event.timeStamp + patienceMs
     return false
   }]))
-  useKeys(actions)
+  useKeys(actions, { beforeOthers: true })
   onBeforeUnmount(() => { armedUntil = 0 })
 }

@@ -8,9 +8,10 @@ export type KeyActions = Record<string, (event: KeyboardEvent) => unknown>
 /**
  * Keys of one screen, for as long as it is mounted. Names are as in `keystroke`: `j`, `ArrowDown`, `Ctrl+Enter`.
  * Single characters are silent while a text field has focus and when the person has switched them off;
- * keys held with Ctrl always act, because nobody types them by accident.
+ * keys held with Ctrl always act, because nobody types them by accident. `beforeOthers` lets the band hear a key
+ * before the screen does.
  */
-export function useKeys(actions: KeyActions) {
+export function useKeys(actions: KeyActions, options: { beforeOthers?: boolean } = {}) {
   const keys = useKeysStore()
 
   function onKeydown(event: KeyboardEvent) {
@@ -25,8 +26,8 @@ export function useKeys(actions: KeyActions) {
     if (action(event) !== false) event.preventDefault()
   }
 
-  onMounted(() => window.addEventListener('keydown', onKeydown))
-  onBeforeUnmount(() => window.removeEventListener('keydown', onKeydown))
+  onMounted(() => window.addEventListener('keydown', onKeydown, options.beforeOthers))
+  onBeforeUnmount(() => window.removeEventListener('keydown', onKeydown, options.beforeOthers))
 }
 
 /** A dialog owns the keyboard: a key meant for it must not act on the sheet underneath. */
