@@ -91,14 +91,14 @@ export function linearToPercent(value: number, from: number, to: number, marginP
 }
 
 /**
- * Names on one line that would touch are lifted to a second level, alternately.
- * `percents` must be in order; answers true where the name stands on the upper level.
+ * Where the names of one line stand so that none touch: level 0 just above it, level 1 one step up, or `null` when
+ * neither has room and the name is left to the list below. `percents` must be in order.
  */
-export function liftedNames(percents: readonly number[], roomPercent = 6): boolean[] {
-  const lifted: boolean[] = []
-  percents.forEach((percent, index) => {
-    const near = index > 0 && percent - percents[index - 1]! < roomPercent
-    lifted.push(near ? !lifted[index - 1]! : false)
+export function nameLevels(percents: readonly number[], roomPercent = 6): (0 | 1 | null)[] {
+  const last: [number, number] = [-Infinity, -Infinity]
+  return percents.map((percent) => {
+    const level = percent - last[0] >= roomPercent ? 0 : percent - last[1] >= roomPercent ? 1 : null
+    if (level !== null) last[level] = percent
+    return level
   })
-  return lifted
 }
