@@ -1,0 +1,17 @@
+/** Every event that the audit log may hold. A new act needs a line here first. */
+export const auditEvents = [
+  'people.signed-in', 'people.sign-in-refused', 'people.signed-out', 'people.signed-out-everywhere', 'people.password-reset-asked',
+  'people.password-reset', 'people.added', 'people.changed', 'people.disabled', 'people.roles-changed',
+  'patient.added', 'patient.changed', 'patient.viewed', 'patient.searched',
+  'pathway.opened', 'pathway.advanced', 'pathway.held', 'pathway.released', 'pathway.closed', 'pathway.reopened', 'pathway.shared', 'pathway.decided',
+  'referral.triaged', 'referral.changed',
+  'biometry.recorded', 'biometry.explained', 'biometry.accepted', 'biometry.lens-plan-signed', 'biometry.lens-plan-amended',
+  'theatre.risk-assessed', 'theatre.consent-signed', 'theatre.list-added', 'theatre.case-added', 'theatre.case-cancelled', 'theatre.note-signed', 'theatre.note-amended',
+  'visit.booked', 'visit.moved', 'visit.cancelled', 'visit.arrived', 'visit.sent-in', 'visit.missing', 'visit.step-logged', 'visit.session-added', 'visit.session-closed',
+  'review.draft-saved', 'review.signed', 'review.amended',
+  'escalation.raised', 'escalation.joined', 'escalation.acknowledged', 'escalation.taken-over', 'escalation.recorded', 'escalation.closed', 'escalation.rung', 'escalation.shift-set', 'escalation.thresholds-set',
+  'messaging.sent-by-hand', 'messaging.reply-handled', 'messaging.texts-stopped', 'messaging.texts-started', 'messaging.link-opened', 'messaging.link-refused', 'messaging.answered-by-patient', 'messaging.symptoms-answered',
+  'outcome.letter-sent', 'outcome.letter-signed',
+  'demo.clock-moved',
+] as const
+export type AuditEvent = typeof auditEvents[number]
