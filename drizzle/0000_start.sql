@@ -512,7 +512,7 @@ CREATE TABLE "messages" (
 	"created_at" timestamp with time zone NOT NULL,
 	CONSTRAINT "messages_provider_id_unique" UNIQUE("provider_id"),
 	CONSTRAINT "messages_once" UNIQUE("recipient_key","kind","subject_key","occasion","channel"),
-	CONSTRAINT "messages_kind" CHECK ("messages"."kind" in ('surgery.reminder', 'dayone.evening', 'dayone.morning', 'visit.reminder', 'visit.changed', 'visit.cancelled', 'safety.day3', 'safety.day7', 'drops.change', 'missing.patient', 'alert.surgeon', 'alert.rung', 'letter.sent', 'reply.answer', 'account.reset')),
+	CONSTRAINT "messages_kind" CHECK ("messages"."kind" in ('surgery.reminder', 'dayone.evening', 'dayone.morning', 'visit.reminder', 'visit.changed', 'visit.cancelled', 'safety.day3', 'safety.day7', 'drops.change', 'missing.patient', 'alert.surgeon', 'alert.rung', 'letter.sent', 'answer.confirmed', 'answer.cannot-come', 'answer.worried', 'answer.which', 'answer.stopped', 'answer.started', 'answer.received', 'account.reset', 'reply.hand')),
 	CONSTRAINT "messages_state" CHECK ("messages"."state" in ('queued', 'sending', 'sent', 'delivered', 'failed', 'expired', 'withdrawn', 'held')),
 	CONSTRAINT "messages_channel" CHECK ("messages"."channel" in ('text', 'email')),
 	CONSTRAINT "messages_one_recipient" CHECK (num_nonnulls("messages"."patient_id", "messages"."person_id") = 1)

@@ -5,13 +5,13 @@ import { escalations } from '#server/db/schema/escalation'
 import { pathways, patients } from '#server/db/schema/patient'
 import { people, sites } from '#server/db/schema/people'
 import { visits } from '#server/db/schema/visit'
-import { messageChannels, messageKinds, messageStates } from '#shared/domain/messaging/vocabulary'
+import { messageChannels, messageStates, storedKinds } from '#shared/domain/messaging/vocabulary'
 import { urgencies } from '#shared/domain/pathway/vocabulary'
 
 /** The truth about what is due to be sent. A job only wakes the sender. */
 export const messages = pgTable('messages', {
   id: id(),
-  kind: text('kind', { enum: messageKinds }).notNull(),
+  kind: text('kind', { enum: storedKinds }).notNull(),
   /** `patient:<id>` or `person:<id>`. */
   recipientKey: text('recipient_key').notNull(),
   /** What it is about: `visit:<id>`, `escalation:<id>`, `pathway:<id>`. */
@@ -45,7 +45,7 @@ export const messages = pgTable('messages', {
   createdAt: instant('created_at').notNull(),
 }, table => [
   foreignKey({ name: 'messages_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }),
-  check('messages_kind', oneOf(table.kind, messageKinds)),
+  check('messages_kind', oneOf(table.kind, storedKinds)),
   check('messages_state', oneOf(table.state, messageStates)),
   check('messages_channel', oneOf(table.channel, messageChannels)),
   check('messages_one_recipient', sql`num_nonnulls(${table.patientId}, ${table.personId}) = 1`),

@@ -40,3 +40,16 @@ export interface ContactPreferences {
 /** What makes a queued message pointless before it leaves. */
 export const withdrawals = ['moved', 'cancelled', 'closed', 'arrived', 'reviewed', 'escalated', 'discharged', 'changed', 'acknowledged'] as const
 export type Withdrawal = typeof withdrawals[number]
+
+/** Kinds that leave without a plan: an account's new password, and what a person answers by hand. */
+export const unplannedKinds = ['account.reset', 'reply.hand'] as const
+/** Every kind that a message row may have. */
+export const storedKinds = [...messageKinds, ...unplannedKinds] as const
+export type StoredKind = typeof storedKinds[number]
+
+/** What a message row may be sent by; a `call` is a task, not a message. */
+export const messageChannels = ['text', 'email'] as const
+export type MessageChannel = typeof messageChannels[number]
+
+export const messageStates = ['queued', 'sending', 'sent', 'delivered', 'failed', 'expired', 'withdrawn', 'held'] as const
+export type MessageState = typeof messageStates[number]
