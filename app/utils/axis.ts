@@ -90,15 +90,30 @@ export function linearToPercent(value: number, from: number, to: number, marginP
   return round2(marginPercent + share * (100 - 2 * marginPercent))
 }
 
+/** A name over a line: the middle of it and how wide it is drawn, both in per cent. */
+export interface PlacedName { percent: number, width: number }
+
+/** How wide a name is drawn at 12.5 px, of a line that is `lineWidthPx` wide. An estimate: letters of the face average 6.6 px. */
+export function nameWidth(name: string, lineWidthPx: number): number {
+  return round2((name.length * 6.6 + 3) / lineWidthPx * 100)
+}
+
 /**
  * Where the names of one line stand so that none touch: level 0 just above it, level 1 one step up, or `null` when
- * neither has room and the name is left to the list below. `percents` must be in order.
+ * neither has room and the name is left to the list below. With `airy`, a name that would stand close is lifted although
+ * it would still fit. Names come in the order of their place.
  */
-export function nameLevels(percents: readonly number[], roomPercent = 6): (0 | 1 | null)[] {
-  const last: [number, number] = [-Infinity, -Infinity]
-  return percents.map((percent) => {
-    const level = percent - last[0] >= roomPercent ? 0 : percent - last[1] >= roomPercent ? 1 : null
-    if (level !== null) last[level] = percent
-    return level
+export function nameLevels(names: readonly PlacedName[], airy = false): (0 | 1 | null)[] {
+  const last: [PlacedName | null, PlacedName | null] = [null, null]
+  const fits = (name: PlacedName, level: 0 | 1, air: number) => {
+    const before = last[level]
+    return before === null || name.percent - before.percent >= (name.width + before.width) / 2 * air
+  }
+  return names.map((name) => {
+    const tries: [0 | 1, number][] = airy ? [[0, 1.4], [1, 1.4], [0, 1], [1, 1]] : [[0, 1], [1, 1]]
+    const found = tries.find(([level, air]) => fits(name, level, air))
+    if (!found) return null
+    last[found[0]] = name
+    return found[0]
   })
 }
