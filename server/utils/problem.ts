@@ -17,6 +17,8 @@ const statusOfEnding: Record<string, number> = {
   'place-taken': 409,
   'place-closed': 409,
   'place-past': 422,
+  'incomplete': 422,
+  'doubtful': 422,
   'site-not-found': 404,
   'place-not-found': 404,
   'already-signed': 409,
