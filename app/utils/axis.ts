@@ -51,7 +51,7 @@ export interface AxisTick {
 
 const dayLabels: Record<DaysAxisWidth, readonly [day: number, label: string, anchor: AxisTick['anchor']][]> = {
   wide: [[-84, '12 weeks', 'start'], [-28, '4 weeks', 'middle'], [-7, '1 week', 'middle'], [1, 'day 1', 'middle'], [7, '1 week', 'middle'], [14, '2 weeks', 'middle'], [28, '4 weeks', 'middle'], [42, '6 weeks', 'end']],
-  middle: [[-28, '4 weeks', 'start'], [-7, '1 week', 'middle'], [1, 'day 1', 'middle'], [7, '1 week', 'middle'], [14, '2 weeks', 'middle'], [28, '4 weeks', 'middle'], [42, '6 weeks', 'end']],
+  middle: [[-28, '4 weeks', 'start'], [-7, '1 week', 'middle'], [1, 'day 1', 'start'], [7, '1 week', 'middle'], [42, '6 weeks', 'end']],
   narrow: [[-84, '12 weeks', 'start'], [-7, '1 w', 'middle'], [1, 'day 1', 'start'], [14, '2 w', 'middle'], [42, '6 weeks', 'end']],
 }
 
