@@ -56,6 +56,9 @@ export default defineNuxtConfig({
       htmlAttrs: { lang: 'en-GB' },
       titleTemplate: '%s · Dawnward',
       title: 'Dawnward',
+      link: [{ rel: 'icon', type: 'image/svg+xml', href: '/favicon.svg' }],
+      // Before the first paint, so that a darkened room never sees a bright frame.
+      script: [{ src: '/theme.js' }],
       meta: [{ name: 'viewport', content: 'width=device-width, initial-scale=1' }, { name: 'robots', content: 'noindex' }],
     },
   },

@@ -5,14 +5,14 @@ import UiButton from '../../../../app/components/ui/UiButton.vue'
 
 describe('a button', () => {
   it('says what it is doing while busy, and does nothing twice', async () => {
-    const wrapper = mount(UiButton, { props: { busy: true, busyLabel: 'Signing…' }, slots: { default: 'Sign' } })
+    const wrapper = mount(UiButton, { global: { stubs: { NuxtLink: true } }, props: { busy: true, busyLabel: 'Signing…' }, slots: { default: 'Sign' } })
     await wrapper.get('button').trigger('click')
     expect(wrapper.text()).toBe('Signing…')
     expect(wrapper.emitted('click')).toBeUndefined()
   })
 
   it('keeps its place in the tab order when it cannot be used, and is read with its reason', async () => {
-    const wrapper = mount(UiButton, { props: { reason: 'Two findings are missing.' }, slots: { default: 'Sign' }, attachTo: document.body })
+    const wrapper = mount(UiButton, { global: { stubs: { NuxtLink: true } }, props: { reason: 'Two findings are missing.' }, slots: { default: 'Sign' }, attachTo: document.body })
     const button = wrapper.get('button')
     await button.trigger('click')
     expect(wrapper.emitted('click')).toBeUndefined()
@@ -23,14 +23,14 @@ describe('a button', () => {
   })
 
   it('stops the form it would have sent', async () => {
-    const form = mount({ components: { UiButton }, template: '<form @submit.prevent="$emit(\'sent\')"><UiButton type="submit" reason="Not yet.">Send</UiButton></form>', emits: ['sent'] }, { attachTo: document.body })
+    const form = mount({ components: { UiButton }, template: '<form @submit.prevent="$emit(\'sent\')"><UiButton type="submit" reason="Not yet.">Send</UiButton></form>', emits: ['sent'] }, { global: { stubs: { NuxtLink: true } }, attachTo: document.body })
     form.get('button').element.click()
     expect(form.emitted('sent')).toBeUndefined()
     form.unmount()
   })
 
   it('acts once when it can', async () => {
-    const wrapper = mount(UiButton, { slots: { default: 'Ring now' } })
+    const wrapper = mount(UiButton, { global: { stubs: { NuxtLink: true } }, slots: { default: 'Ring now' } })
     await wrapper.get('button').trigger('click')
     expect(wrapper.emitted('click')).toHaveLength(1)
   })

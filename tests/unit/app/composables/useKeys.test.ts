@@ -31,12 +31,11 @@ describe('single-letter keys', () => {
     const letter = vi.fn()
     const held = vi.fn()
     const wrapper = screen(() => useKeys({ 'c': letter, 'Ctrl+Enter': held }))
-    useKeysStore().set(false)
+    useKeysStore().enabled = false
     press('c')
     press('Enter', '#text', { ctrlKey: true })
     expect(letter).not.toHaveBeenCalled()
     expect(held).toHaveBeenCalledOnce()
-    useKeysStore().set(true)
     wrapper.unmount()
   })
 
