@@ -1,0 +1,29 @@
+import nodemailer from 'nodemailer'
+import type { SendResult } from '#server/gateways/text'
+
+export interface MailToSend { id: string, to: string, subject: string, body: string, calendar?: string | null }
+
+let transport: nodemailer.Transporter | undefined
+
+/** One pooled transport per process. The Message-ID is the message row's own id, so that a mail server can drop a second copy. */
+export async function sendMail(mail: MailToSend): Promise<SendResult> {
+  const url = process.env.DAWNWARD_MAIL_URL
+  if (!url) return { outcome: 'refused', why: 'No mail server is set up.', permanent: true }
+  transport ??= nodemailer.createTransport(`${url}${url.includes('?') ? '&' : '?'}pool=true&maxConnections=5&maxMessages=Infinity&connectionTimeout=8000&socketTimeout=15000`)
+  try {
+    const sent = await transport.sendMail({
+      messageId: `<${mail.id}@dawnward.example.org>`, from: process.env.DAWNWARD_MAIL_FROM ?? 'Ferncombe Eye Unit <no-reply@example.org>', to: mail.to, subject: mail.subject, text: mail.body,
+      ...(mail.calendar ? { icalEvent: { method: 'PUBLISH', content: mail.calendar } } : {}),
+    })
+    return { outcome: 'sent', providerId: String(sent.messageId) }
+  }
+  catch (error) {
+    const { responseCode, message } = error as { responseCode?: number, message?: string }
+    return { outcome: 'refused', why: String(message ?? 'mail failed').slice(0, 200), permanent: responseCode !== undefined && responseCode >= 500 }
+  }
+}
+
+export function closeMail(): void {
+  transport?.close()
+  transport = undefined
+}

@@ -1,0 +1,115 @@
+import { and, eq, inArray } from 'drizzle-orm'
+import dayjs from 'dayjs'
+import timezone from 'dayjs/plugin/timezone.js'
+import utc from 'dayjs/plugin/utc.js'
+import type { Transaction } from '#server/db/client'
+import type { escalations, pathways, patients, sites, visits } from '#server/db/schema/index'
+import { messageEvents, messages, patientLinks } from '#server/db/schema/index'
+import type { Reachable } from '#server/services/escalation/find-surgeon'
+import { hashSecret, newSecret } from '#server/services/people/tokens'
+import { planMessages } from '#shared/domain/messaging/reminder-plan'
+import type { Occasion } from '#shared/domain/messaging/reminder-plan'
+import { renderTemplate } from '#shared/domain/messaging/templates'
+import type { TemplateValues } from '#shared/domain/messaging/templates'
+import { languages } from '#shared/domain/messaging/vocabulary'
+import type { ContactPreferences, Language } from '#shared/domain/messaging/vocabulary'
+
+dayjs.extend(utc)
+dayjs.extend(timezone)
+
+type Patient = typeof patients.$inferSelect
+type Visit = typeof visits.$inferSelect
+type Site = typeof sites.$inferSelect
+type Pathway = typeof pathways.$inferSelect
+type Escalation = typeof escalations.$inferSelect
+type NewMessage = typeof messages.$inferInsert
+
+const linkDays = 60
+
+/** The address that links in messages lead to. */
+function origin(): string {
+  return process.env.DAWNWARD_ORIGIN ?? 'http://127.0.0.1:3000'
+}
+
+function preferencesOf(patient: Patient): ContactPreferences {
+  const allowed = patient.messageConsent === true && patient.diedOn === null
+  return { preferred: patient.preferredChannel, hasMobile: allowed && Boolean(patient.phone), hasEmail: allowed && Boolean(patient.email), textsStopped: patient.textsStoppedAt !== null, wantsDropsReminders: patient.wantsDropsReminders }
+}
+
+function languageOf(patient: Patient): Language {
+  return languages.find(each => each === patient.language) ?? 'en'
+}
+
+/** A link that opens this patient's own page. Only its hash is kept, so a stolen table opens nothing. */
+export async function makeLink(tx: Transaction, input: { patientId: string, pathwayId: string | null, visitId: string | null, now: Date }): Promise<string> {
+  const token = newSecret()
+  await tx.insert(patientLinks).values({ tokenHash: hashSecret(token), patientId: input.patientId, pathwayId: input.pathwayId, visitId: input.visitId, createdAt: input.now, expiresAt: new Date(input.now.getTime() + linkDays * 86_400_000) })
+  return `${origin()}/v/${token}`
+}
+
+async function insertOnce(tx: Transaction, rows: NewMessage[], now: Date): Promise<void> {
+  if (!rows.length) return
+  const inserted = await tx.insert(messages).values(rows).onConflictDoNothing().returning({ id: messages.id })
+  if (inserted.length) await tx.insert(messageEvents).values(inserted.map(row => ({ messageId: row.id, at: now, kind: 'queued' })))
+}
+
+export interface PatientMessageInput { occasion: Occasion, patient: Patient, pathway: Pathway, site: Site, visit?: Visit, subjectKey: string, values: TemplateValues, now: Date }
+
+/** Plans one occasion and writes its rows in the caller's transaction. A `call` is shown to the nurse; it is not a message. */
+export async function queuePatientMessages(tx: Transaction, input: PatientMessageInput): Promise<void> {
+  const { patient, pathway, site, visit, now } = input
+  const planned = planMessages({ occasion: input.occasion, siteZone: site.zone, preferences: preferencesOf(patient), now })
+  const rows: NewMessage[] = []
+  for (const message of planned) {
+    if (message.channel === 'call') continue
+    const link = await makeLink(tx, { patientId: patient.id, pathwayId: pathway.id, visitId: visit?.id ?? null, now })
+    const rendered = renderTemplate({ kind: message.kind, channel: message.channel, language: languageOf(patient), values: { phone: site.phone, link, ...input.values } })
+    rows.push({
+      kind: message.kind, recipientKey: `patient:${patient.id}`, subjectKey: input.subjectKey, occasion: message.occasion, channel: message.channel,
+      patientId: patient.id, pathwayId: pathway.id, visitId: visit?.id ?? null, siteId: site.id, toAddress: (message.channel === 'text' ? patient.phone : patient.email) ?? '',
+      subject: rendered.subject ?? '', body: rendered.text, language: rendered.language, dueAt: message.dueAt, expiresAt: message.expiresAt, createdAt: now,
+    })
+  }
+  await insertOnce(tx, rows, now)
+}
+
+export interface VisitMessageInput { visit: Visit, patient: Patient, pathway: Pathway, site: Site, now: Date, change?: 'moved' | 'cancelled' }
+
+/** Reminders of a visit, and the message that it was moved or cancelled. */
+export async function queueVisitMessages(tx: Transaction, input: VisitMessageInput): Promise<void> {
+  const { visit, site, now, change } = input
+  const local = dayjs(visit.startsAt).tz(site.zone)
+  const values = { date: local.format('dddd D MMMM'), time: local.format('HH:mm'), place: site.name }
+  const base = { patient: input.patient, pathway: input.pathway, site, visit, subjectKey: `visit:${visit.id}`, values, now }
+  if (change) await queuePatientMessages(tx, { ...base, occasion: { kind: change === 'moved' ? 'visit-changed' : 'visit-cancelled', startsAt: visit.startsAt, version: visit.rowVersion } })
+  if (change === 'cancelled') return
+  await queuePatientMessages(tx, { ...base, occasion: { kind: 'visit', visitKind: visit.kind, startsAt: visit.startsAt } })
+  const surgery = input.pathway.operatedAt
+  if (visit.kind === 'day-one' && surgery) await queuePatientMessages(tx, { ...base, occasion: { kind: 'note-signed', surgeryDate: dayjs(surgery).tz(site.zone).format('YYYY-MM-DD'), signedAt: surgery } })
+}
+
+export interface AlertInput { escalation: Escalation, person: Reachable, rung: number, now: Date }
+
+/** Tells one member of staff by text and by e-mail, day and night: urgency and number, never a name or a finding. */
+export async function queueAlert(tx: Transaction, { escalation, person, rung, now }: AlertInput): Promise<void> {
+  const words = { 'now': 'Now', 'today': 'Today', 'this-week': 'This week' }[escalation.urgency]
+  const planned = planMessages({ occasion: { kind: 'alert', rung: Math.max(0, rung - 1), urgency: escalation.urgency }, siteZone: 'UTC', now, preferences: { preferred: 'text', hasMobile: Boolean(person.phone), hasEmail: true, textsStopped: false, wantsDropsReminders: false } })
+  await insertOnce(tx, planned.flatMap((message) => {
+    if (message.channel === 'call') return []
+    const rendered = renderTemplate({ kind: message.kind, channel: message.channel, language: 'en', values: { urgency: words, number: String(escalation.number), link: `${origin()}/escalations` } })
+    return [{
+      kind: message.kind, recipientKey: `person:${person.id}`, subjectKey: `escalation:${escalation.id}`, occasion: `${message.occasion} ${escalation.rowVersion}`, channel: message.channel, personId: person.id, escalationId: escalation.id, siteId: escalation.siteId,
+      toAddress: (message.channel === 'text' ? person.phone : person.email) ?? '', subject: rendered.subject ?? '', body: rendered.text, language: 'en', dueAt: message.dueAt, expiresAt: message.expiresAt, createdAt: now,
+    }]
+  }), now)
+}
+
+export interface WithdrawInput { visitId?: string, pathwayId?: string, escalationId?: string, why: string, now: Date }
+
+/** Takes back what has not been sent. What is on its way or sent stays in the history. */
+export async function withdrawMessages(tx: Transaction, input: WithdrawInput): Promise<void> {
+  const which = [input.visitId && eq(messages.visitId, input.visitId), input.pathwayId && eq(messages.pathwayId, input.pathwayId), input.escalationId && eq(messages.escalationId, input.escalationId)].filter(each => typeof each === 'object')
+  if (!which.length) return
+  const withdrawn = await tx.update(messages).set({ state: 'withdrawn' }).where(and(...which, inArray(messages.state, ['queued', 'held']))).returning({ id: messages.id })
+  if (withdrawn.length) await tx.insert(messageEvents).values(withdrawn.map(row => ({ messageId: row.id, at: input.now, kind: 'withdrawn', detail: { why: input.why } })))
+}
