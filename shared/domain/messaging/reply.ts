@@ -28,7 +28,7 @@ export interface ReplyReading {
  */
 export function normaliseReply(text: string): string {
   return text.replace(/[\u2018\u2019\u02bc\u2032`\u00b4]/g, '\'').normalize('NFKC').toLowerCase()
-    .normalize('NFD').replace(/[\u0300-\u036f\u064b-\u065f\u0670\u0640\u09bc\u0a3c]/g, '').normalize('NFC')
+    .normalize('NFD').replace(/\u0640/g, '').replace(/[\u0300-\u036f\u064b-\u065f\u0670\u09bc\u0a3c]/g, '').normalize('NFC')
     .replace(/ł/g, 'l').replace(/[ىی]/g, 'ي').replace(/[ةہ]/g, 'ه').replace(/ک/g, 'ك').replace(/ٱ/g, 'ا')
     .replace(/\bi'll\b/g, 'i will').replace(/'/g, '')
     .replace(/[^\p{L}\p{M}\p{N}]+/gu, ' ').trim()

@@ -1,6 +1,6 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import { DomainError } from '#shared/domain/errors'
+import type { DomainError } from '#shared/domain/errors'
 import { urgencies } from '#shared/domain/pathway/vocabulary'
 import { pressureBandIndex, pressureConcern, pressureDoubt, pressureLimitFor, pressureUnchecked } from '#shared/domain/review/pressure'
 import type { PressureFacts } from '#shared/domain/review/pressure'
