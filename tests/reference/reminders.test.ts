@@ -104,7 +104,19 @@ describe('wall-clock time in a gap and in an overlap', () => {
     expect(atWallTime(Temporal.PlainDate.from(date), time as WallTime, london).toInstant().toString()).toBe(expected)
   })
 
-  it('agrees with dayjs for every quarter hour of a year outside gap and overlap', () => {
+  it('takes the time still to come when clocks go back over the end of quiet hours', () => {
+    // In London 01:30 happens at 00:30Z and again at 01:30Z on 25 October 2026.
+    expect(nextAllowed(new Date('2026-10-25T00:10:00Z'), london, '01:30').toISOString()).toBe('2026-10-25T00:30:00.000Z')
+    expect(nextAllowed(new Date('2026-10-25T01:10:00Z'), london, '01:30').toISOString()).toBe('2026-10-25T01:30:00.000Z')
+    expect(nextAllowed(new Date('2026-10-25T01:30:00Z'), london, '01:30').toISOString()).toBe('2026-10-25T01:30:00.000Z')
+  })
+
+  it('waits over the day that Samoa skipped, 30 December 2011', () => {
+    // Clocks went from the end of 29 December (UTC-10) to 31 December (UTC+14): 21:00 on the 29th is 07:00Z, 08:00 on the 31st is 18:00Z.
+    expect(nextAllowed(new Date('2011-12-30T07:00:00Z'), 'Pacific/Apia').toISOString()).toBe('2011-12-30T18:00:00.000Z')
+  })
+
+  it('agrees with dayjs for mornings and evenings of every week of a year', () => {
     for (const siteZone of [london, 'America/New_York', 'Asia/Kolkata', 'Australia/Lord_Howe']) {
       for (let day = 0; day < 365; day += 7) {
         const date = Temporal.PlainDate.from('2026-01-01').add({ days: day })

@@ -23,9 +23,8 @@ export function toDate(moment: Temporal.ZonedDateTime | Temporal.Instant): Date 
 export function atWallTime(date: Temporal.PlainDate, time: WallTime, siteZone: string, notBefore?: Temporal.ZonedDateTime): Temporal.ZonedDateTime {
   const wall = date.toPlainDateTime(Temporal.PlainTime.from(time))
   const first = wall.toZonedDateTime(siteZone, { disambiguation: 'compatible' })
-  if (!notBefore || Temporal.ZonedDateTime.compare(first, notBefore) >= 0) return first
-  const second = wall.toZonedDateTime(siteZone, { disambiguation: 'later' })
-  return Temporal.ZonedDateTime.compare(second, notBefore) >= 0 ? second : first
+  const passed = notBefore !== undefined && Temporal.ZonedDateTime.compare(first, notBefore) < 0
+  return passed ? wall.toZonedDateTime(siteZone, { disambiguation: 'later' }) : first
 }
 
 /** Whether a clock showing this moment is inside quiet hours. `until` moves their end, for the day-one morning text. */
@@ -38,17 +37,13 @@ function isQuietMoment(moment: Temporal.ZonedDateTime, until: WallTime): boolean
   return Temporal.PlainTime.compare(time, Temporal.PlainTime.from(quietFrom)) >= 0 || Temporal.PlainTime.compare(time, Temporal.PlainTime.from(until)) < 0
 }
 
-/** The first moment at or after `instant` that is outside quiet hours. */
+/**
+ * The moment itself when a clock there shows one outside quiet hours, else the next end of quiet hours. Where clocks
+ * go back over that end, the one still to come.
+ */
 export function nextAllowed(instant: Date, siteZone: string, until: WallTime = quietUntil): Date {
   const moment = inZone(instant, siteZone)
   if (!isQuietMoment(moment, until)) return instant
   const evening = Temporal.PlainTime.compare(moment.toPlainTime(), Temporal.PlainTime.from(quietFrom)) >= 0
-  let date = evening ? moment.toPlainDate().add({ days: 1 }) : moment.toPlainDate()
-  let morning = atWallTime(date, until, siteZone, moment)
-  // A zone that skipped a calendar day, or turned its clocks back across the evening, needs one more step.
-  while (Temporal.ZonedDateTime.compare(morning, moment) < 0 || isQuietMoment(morning, until)) {
-    date = date.add({ days: 1 })
-    morning = atWallTime(date, until, siteZone, moment)
-  }
-  return toDate(morning)
+  return toDate(atWallTime(moment.toPlainDate().add({ days: evening ? 1 : 0 }), until, siteZone, moment))
 }

@@ -86,6 +86,16 @@ describe('writing acuity', () => {
     }), { numRuns: 1000 })
   })
 
+  it.each(['6/3', '6/4', '6/5', '6/6', '6/7.5', '6/9', '6/12', '6/18', '6/24', '6/36', '6/60', '5/60', '4/60', '3/60', '2/60', '1/60', '6/9-2', '6/6-2', '6/18+4'])('writes the line %s as it was read', (line) => {
+    expect(formatAcuity(parseAcuity(line).logMar, 'metres')).toBe(line)
+  })
+
+  it('writes what no line is near as the exact fraction, and letters that cannot be read as none', () => {
+    expect(formatAcuity(1.63, 'metres')).toBe('6/256')
+    expect(formatAcuity(1.8, 'letters')).toBe('0 letters')
+    expect(formatAcuity(1.7, 'letters')).toBe('0 letters')
+  })
+
   it('reads low vision back exactly', () => {
     for (const word of lowVisions) expect(parseAcuity(formatAcuity(lowVisionEquivalents.logMar[word], 'metres')).logMar).toBe(lowVisionEquivalents.logMar[word])
   })
@@ -97,6 +107,8 @@ describe('comparing acuity', () => {
     expect(compareAcuity(parseAcuity('6/9'), parseAcuity('6/9-2'))).toMatchObject({ direction: 'worse', letters: 2, meaningful: false })
     expect(compareAcuity(parseAcuity('6/60'), parseAcuity('HM'))).toMatchObject({ direction: 'worse', conventional: true })
     expect(compareAcuity(parseAcuity('6/12'), parseAcuity('20/40')).direction).toBe('same')
+    expect(compareAcuity({ logMar: 0.2 }, { logMar: 0.3 })).toMatchObject({ meaningful: true, lines: 1 })
+    expect(compareAcuity({ logMar: 0.2 }, { logMar: 0.29 })).toMatchObject({ meaningful: false, lines: 0.9 })
   })
 
   it('is the same size both ways and never NaN', () => {
@@ -122,6 +134,8 @@ describe('comparing acuity', () => {
     const acuityPinhole = parseAcuity('6/9')
     expect(bestAcuity({ acuityUnaided, acuityPinhole })).toBe(acuityPinhole)
     expect(bestAcuity({ acuityUnaided })).toBe(acuityUnaided)
+    expect(bestAcuity({ acuityUnaided: acuityPinhole, acuityPinhole: acuityUnaided })).toBe(acuityPinhole)
+    expect(bestAcuity({ acuityPinhole })).toBe(acuityPinhole)
     expect(bestAcuity({})).toBeUndefined()
     expect(meanAcuity([])).toBeUndefined()
     expect(meanAcuity([parseAcuity('CF'), parseAcuity('6/6')])?.conventional).toBe(1)

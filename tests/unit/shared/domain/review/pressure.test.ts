@@ -36,6 +36,20 @@ describe('pressure', () => {
     expect(pressureConcern({ iopMmHg: 23, riskReasons: ['glaucoma'] })).toMatchObject({ recheckWithinHours: 48 })
   })
 
+  it('says each reason in a sentence of its own, with its source', () => {
+    const reasons = (facts: PressureFacts) => pressureConcern(facts)?.reasons.map(({ id, sentence, source }) => ({ id, sentence, source }))
+    expect(reasons({ iopMmHg: 4, riskReasons: ['glaucoma'] })).toEqual([{ id: 'pressure.low', sentence: '5 mmHg or less.', source: 'proposed; 5 mmHg as hypotony is the commonest definition' }])
+    expect(reasons({ iopMmHg: 7, riskReasons: [], chamberDepth: 'flat' })).toMatchObject([{ id: 'pressure.low', sentence: '6 to 7 mmHg, with a leak or a shallow chamber.' }])
+    expect(reasons({ iopMmHg: 33, riskReasons: ['glaucoma', 'only-eye'], oedemaGrade: 3 })).toEqual([
+      { id: 'pressure.raised', sentence: '30 to 34 mmHg, eye at risk (glaucoma, only seeing eye).', source: 'Wills Eye Manual, 8th edition; proposed' },
+      { id: 'pressure.symptoms', sentence: '30 mmHg or more with corneal oedema 3.', source: 'proposed' },
+    ])
+    expect(reasons({ iopMmHg: 29, riskReasons: [], preoperativeIopMmHg: 21, daysAfterSurgery: 20, onSteroidDrops: true })?.[1]).toEqual(
+      { id: 'pressure.steroid-response', sentence: 'Day 20 on steroid drops, 29 mmHg, more than 25 % above 21 mmHg before surgery: steroid response.', source: 'Chang, Tan, Tripodis 2011' })
+    // The row alone raises nothing here, the steroid rule does.
+    expect(pressureConcern({ iopMmHg: 30, riskReasons: [], preoperativeIopMmHg: 16, daysAfterSurgery: 14, onSteroidDrops: true })?.reasons.map(reason => reason.id)).toEqual(['pressure.rise', 'pressure.steroid-response'])
+  })
+
   it('has rows without a gap or an overlap from 0 to 80', () => {
     for (let iop = 0; iop <= 80; iop++) expect(pressureBands.filter(band => band.fromMmHg <= iop && iop <= band.toMmHg)).toHaveLength(1)
     fc.assert(fc.property(fc.double({ min: 0, max: 80, noNaN: true }), iop => pressureBandIndex(iop) >= 0))
@@ -47,11 +61,13 @@ describe('pressure', () => {
   })
 
   it.each([-1, 80.1, 300, Number.NaN, Number.POSITIVE_INFINITY])('refuses %d mmHg', (iopMmHg) => {
-    expect(() => pressureConcern({ iopMmHg, riskReasons: [] })).toThrow(expect.objectContaining({ name: 'DomainError', code: 'review.pressure-out-of-range' }) as DomainError)
+    const message = 'Enter a pressure from 0 to 80 mmHg, or leave it blank if it was not measured.'
+    expect(() => pressureConcern({ iopMmHg, riskReasons: [] })).toThrow(expect.objectContaining({ name: 'DomainError', code: 'review.pressure-out-of-range', fields: [{ field: 'iopMmHg', code: 'out-of-range', message, limit: '0 to 80 mmHg' }] }) as DomainError)
   })
 
   it('asks again outside 4 to 60', () => {
     expect([3, 4, 60, 61].map(iop => pressureDoubt(iop) !== undefined)).toEqual([true, false, false, true])
+    expect(pressureDoubt(70)).toBe('70 mmHg is rare. Measure again, then confirm it.')
   })
 
   it('never lowers the urgency for a worse fact', () => {
@@ -86,6 +102,18 @@ describe('pressure', () => {
     expect(pressureUnchecked({ iopMmHg: 5, riskReasons: [], seidel: 'not-done' })).toEqual(['the rise since before surgery', 'a wound leak', 'the depth of the chamber'])
     expect(pressureUnchecked({ iopMmHg: 32, riskReasons: [], preoperativeIopMmHg: 15, daysAfterSurgery: 20 })).toEqual(['pain', 'vomiting', 'corneal oedema', 'steroid drops'])
     expect(pressureUnchecked({ iopMmHg: 16, riskReasons: [], preoperativeIopMmHg: 15 })).toEqual([])
+    const base = { riskReasons: [], preoperativeIopMmHg: 15 }
+    expect(pressureUnchecked({ ...base, iopMmHg: 7 })).toEqual(['a wound leak', 'the depth of the chamber'])
+    expect(pressureUnchecked({ ...base, iopMmHg: 7, seidel: 'negative', chamberDepth: 'deep' })).toEqual([])
+    expect(pressureUnchecked({ ...base, iopMmHg: 7, woundLeaking: false, chamberDepth: 'deep' })).toEqual([])
+    expect(pressureUnchecked({ ...base, iopMmHg: 8 })).toEqual([])
+    expect(pressureUnchecked({ ...base, iopMmHg: 30 })).toEqual(['pain', 'vomiting', 'corneal oedema'])
+    expect(pressureUnchecked({ ...base, iopMmHg: 30, painScore: 0, vomiting: false, oedemaGrade: 0 })).toEqual([])
+    expect(pressureUnchecked({ ...base, iopMmHg: 28, daysAfterSurgery: 14 })).toEqual(['steroid drops'])
+    expect(pressureUnchecked({ ...base, iopMmHg: 28, daysAfterSurgery: 14, onSteroidDrops: false })).toEqual([])
+    expect(pressureUnchecked({ ...base, iopMmHg: 28, daysAfterSurgery: 13 })).toEqual([])
+    expect(pressureUnchecked({ ...base, iopMmHg: 27, daysAfterSurgery: 30 })).toEqual([])
+    expect(pressureUnchecked({ ...base, iopMmHg: 28 })).toEqual([])
   })
 
   it('knows from which pressure this eye is urgent', () => {
