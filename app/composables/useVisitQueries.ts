@@ -1,0 +1,47 @@
+import { useMutation, useQuery, useQueryClient } from '@tanstack/vue-query'
+import type { MaybeRefOrGetter } from 'vue'
+import type { ClinicDay, OpenPlaces, ToBook } from '#server/presenters/visit'
+
+export const visitKeys = {
+  day: (siteId: MaybeRefOrGetter<string | undefined>, date: MaybeRefOrGetter<string | undefined>) => ['visit', 'day', siteId, date] as const,
+  toBook: (siteId: MaybeRefOrGetter<string | undefined>) => ['visit', 'to-book', siteId] as const,
+  places: (kind: MaybeRefOrGetter<string>) => ['visit', 'places', kind] as const,
+}
+
+/** Where the morning stands: one site's clinic of one day. */
+export function useClinicDay(siteId: MaybeRefOrGetter<string | undefined>, date: MaybeRefOrGetter<string | undefined>) {
+  const api = useApi()
+  const query = useQuery({ queryKey: visitKeys.day(siteId, date), queryFn: () => api<ClinicDay>('/api/visit/clinic', { query: { siteId: toValue(siteId), date: toValue(date) } }), refetchInterval: 30_000 })
+  onServerPrefetch(() => query.suspense().catch(() => undefined))
+  return query
+}
+
+export function useToBook(siteId: MaybeRefOrGetter<string | undefined>) {
+  const api = useApi()
+  const query = useQuery({ queryKey: visitKeys.toBook(siteId), queryFn: () => api<ToBook>('/api/visit/to-book', { query: { siteId: toValue(siteId) } }), refetchInterval: 60_000 })
+  onServerPrefetch(() => query.suspense().catch(() => undefined))
+  return query
+}
+
+export function useOpenPlaces(kind: MaybeRefOrGetter<'day-one' | 'follow-up'>) {
+  const api = useApi()
+  const query = useQuery({ queryKey: visitKeys.places(kind), queryFn: () => api<OpenPlaces>('/api/visit/open-places', { query: { kind: toValue(kind), days: toValue(kind) === 'day-one' ? 3 : 42 } }) })
+  onServerPrefetch(() => query.suspense().catch(() => undefined))
+  return query
+}
+
+type Step = 'arrived' | 'send-in' | 'missing'
+
+/** The acts of the clinic list. Each refetches what it changed; nothing is faked on screen. */
+export function useVisitActs() {
+  const api = useApi()
+  const client = useQueryClient()
+  const onSettled = () => Promise.all([client.invalidateQueries({ queryKey: ['visit'] }), client.invalidateQueries({ queryKey: ['pathway'] })])
+  const step = useMutation({ mutationFn: (input: { id: string, step: Step, rowVersion: number }) => api(`/api/visit/${input.id}/${input.step}`, { method: 'POST', body: { rowVersion: input.rowVersion } }), onSettled })
+  const book = useMutation({ mutationFn: (body: { pathwayId: string, placeId: string, kind: string }) => api<{ id: string, startsAt: string }>('/api/visit', { method: 'POST', body }), onSettled })
+  const bookList = useMutation({ mutationFn: (bookings: { pathwayId: string, placeId: string }[]) => api<{ booked: { pathwayId: string, startsAt: string }[], refused: { pathwayId: string, reason: string }[] }>('/api/visit/book-list', { method: 'POST', body: { bookings } }), onSettled })
+  const move = useMutation({ mutationFn: (input: { id: string, placeId: string, rowVersion: number }) => api(`/api/visit/${input.id}/move`, { method: 'POST', body: { placeId: input.placeId, rowVersion: input.rowVersion } }), onSettled })
+  const cancel = useMutation({ mutationFn: (input: { id: string, reason: string, rowVersion: number }) => api(`/api/visit/${input.id}/cancel`, { method: 'POST', body: { reason: input.reason, rowVersion: input.rowVersion } }), onSettled })
+  const logStep = useMutation({ mutationFn: (input: { id: string, step: string, outcome: string }) => api(`/api/visit/${input.id}/missing-step`, { method: 'POST', body: { step: input.step, outcome: input.outcome } }), onSettled })
+  return { step, book, bookList, move, cancel, logStep }
+}
