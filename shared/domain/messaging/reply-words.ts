@@ -54,7 +54,7 @@ export const weakYes: readonly string[] = [
 ]
 /** May stand beside a yes without changing it. */
 export const courtesies: readonly string[] = [
-  'thank you very much', 'thank you so much', 'thank you', 'thanks', 'thankyou', 'thx', 'ta', 'cheers', 'many thanks', 'please', 'pls', 'hi', 'hello', 'dear', 'doctor', 'nurse', 'good morning', 'good evening', 'to confirm', 'my appointment', 'the appointment', 'appointment', 'my visit', 'visit', 'tomorrow', 'today', 'then', 'x', 'xx', 'kind regards', 'regards',
+  'thank you very much', 'thank you so much', 'thank you', 'thanks', 'thankyou', 'thx', 'ta', 'cheers', 'many thanks', 'please', 'pls', 'sorry', 'so sorry', 'hi', 'hello', 'dear', 'doctor', 'nurse', 'good morning', 'good evening', 'to confirm', 'my appointment', 'the appointment', 'appointment', 'my visit', 'visit', 'tomorrow', 'today', 'then', 'x', 'xx', 'kind regards', 'regards',
   'diolch', 'diolch yn fawr', 'dziekuje', 'prosze', 'شكرا', 'شكرا لكم', 'ধন্যবাদ', 'ਧੰਨਵਾਦ', 'ਸ਼ੁਕਰੀਆ', 'شکریہ',
 ]
 

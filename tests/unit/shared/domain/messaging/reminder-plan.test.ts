@@ -25,6 +25,7 @@ describe('channels', () => {
     expect(channels(visit, { textsStopped: true, hasEmail: false })).toEqual(['call', 'call'])
     expect(channels(visit, { preferred: 'call' })).toEqual(['call', 'call'])
     expect(channels({ kind: 'surgery-done', surgeryDate: '2026-01-10' }, { preferred: 'email' })).toEqual(['text', 'text'])
+    expect(channels({ kind: 'letter', version: 1 }, {})).toEqual(['email'])
     expect(channels({ kind: 'letter', version: 1 }, { hasEmail: false })).toEqual(['call'])
   })
 
@@ -47,6 +48,56 @@ describe('channels', () => {
     const stopped = { ...preferences, textsStopped: true, hasEmail: false }
     for (const kind of answerKinds) expect(channelsFor(reminderRules[kind], stopped)).toEqual([reminderRules[kind].evenWhenStopped ? 'text' : 'call'])
     expect(answerKinds.filter(kind => reminderRules[kind].evenWhenStopped)).toEqual(['answer.worried', 'answer.stopped'])
+  })
+})
+
+describe('what is planned, in full', () => {
+  const now = at('2026-01-05T12:00:00Z')
+  const full = (occasion: Occasion, when = now) => planMessages({ occasion, siteZone, preferences, now: when }).map(({ kind, occasion: name, topic, channel, dueAt, expiresAt }) => `${kind} | ${name} | ${topic} | ${channel} | ${dueAt.toISOString().slice(0, 16)} to ${expiresAt.toISOString().slice(0, 16)}`)
+
+  it.each<[Occasion, string[]]>([
+    [{ kind: 'surgery', startsAt: at('2026-01-15T09:00:00Z') }, ['surgery.reminder | 7 days before 2026-01-15T09:00 | surgery 2026-01-15T09:00 | text | 2026-01-08T10:00 to 2026-01-08T18:00', 'surgery.reminder | 1 day before 2026-01-15T09:00 | surgery 2026-01-15T09:00 | text | 2026-01-14T10:00 to 2026-01-14T18:00']],
+    [visit, ['visit.reminder | 3 days before 2026-01-15T10:00 | visit 2026-01-15T10:00 | text | 2026-01-12T10:00 to 2026-01-12T18:00', 'visit.reminder | 1 day before 2026-01-15T10:00 | visit 2026-01-15T10:00 | text | 2026-01-14T10:00 to 2026-01-14T18:00']],
+    [{ kind: 'visit', visitKind: 'day-one', startsAt: at('2026-01-15T08:00:00Z') }, ['dayone.morning | morning of 2026-01-15T08:00 | visit 2026-01-15T08:00 | text | 2026-01-15T07:00 to 2026-01-15T08:00']],
+    [{ kind: 'note-signed', surgeryDate: '2026-01-14', signedAt: at('2026-01-14T11:00:00Z') }, ['dayone.evening | evening of 2026-01-14 | evening 2026-01-14 | text | 2026-01-14T13:00 to 2026-01-14T20:00']],
+    [{ kind: 'surgery-done', surgeryDate: '2026-01-14' }, ['safety.day3 | after 2026-01-14 | symptom check 2026-01-17 | text | 2026-01-17T10:00 to 2026-01-17T20:00', 'safety.day7 | after 2026-01-14 | symptom check 2026-01-21 | text | 2026-01-21T10:00 to 2026-01-21T20:00']],
+    [{ kind: 'visit-changed', startsAt: at('2026-01-16T10:00:00Z'), version: 4 }, ['text', 'email'].map(channel => `visit.changed | change 4 to 2026-01-16T10:00 by ${channel} | visit 2026-01-16T10:00 | ${channel} | 2026-01-05T12:00 to 2026-01-16T10:00`)],
+    [{ kind: 'visit-cancelled', startsAt: at('2026-01-16T10:00:00Z'), version: 5 }, ['text', 'email'].map(channel => `visit.cancelled | change 5 by ${channel} | cancelled 2026-01-16T10:00 | ${channel} | 2026-01-05T12:00 to 2026-01-16T10:00`)],
+    [{ kind: 'visit-missing', startsAt: at('2026-01-15T10:00:00Z') }, ['missing.patient | late for 2026-01-15T10:00 | late 2026-01-15T10:00 | text | 2026-01-15T10:20 to 2026-01-15T12:00']],
+    [{ kind: 'drops-change', dates: ['2026-01-20'] }, ['drops.change | step 2026-01-20 | drops 2026-01-20 | text | 2026-01-20T09:00 to 2026-01-20T20:00']],
+    [{ kind: 'alert', rung: 0, urgency: 'now' }, ['text', 'email'].map(channel => `alert.surgeon | rung 0 now by ${channel} | alert 0 now | ${channel} | 2026-01-05T12:00 to 2026-01-06T12:00`)],
+    [{ kind: 'alert', rung: 2, urgency: 'today' }, ['text', 'email'].map(channel => `alert.rung | rung 2 today by ${channel} | alert 2 today | ${channel} | 2026-01-05T12:00 to 2026-01-06T12:00`)],
+    [{ kind: 'letter', version: 2 }, ['letter.sent | version 2 | letter 2 | email | 2026-01-05T12:00 to 2026-01-12T12:00']],
+    [{ kind: 'answer', answer: 'answer.worried', inboundId: 'i1' }, ['answer.worried | to i1 | answer.worried i1 | text | 2026-01-05T12:00 to 2026-01-05T13:00']],
+  ])('%o', (occasion, expected) => {
+    expect(full(occasion)).toEqual(expected)
+  })
+
+  it('answers a worried text in the night at once, and a plain one in the morning', () => {
+    const night = at('2026-01-05T23:30:00Z')
+    expect(full({ kind: 'answer', answer: 'answer.worried', inboundId: 'i1' }, night)).toEqual(['answer.worried | to i1 | answer.worried i1 | text | 2026-01-05T23:30 to 2026-01-06T00:30'])
+    expect(full({ kind: 'answer', answer: 'answer.confirmed', inboundId: 'i1' }, night)).toEqual(['answer.confirmed | to i1 | answer.confirmed i1 | text | 2026-01-06T08:00 to 2026-01-06T11:30'])
+  })
+
+  it('ends the last reminder of an early visit at its start', () => {
+    expect(full({ kind: 'surgery', startsAt: at('2026-01-15T00:30:00Z') }).at(-1)).toContain('to 2026-01-14T18:00')
+    expect(explainPlan({ occasion: { kind: 'visit-cancelled', startsAt: at('2026-01-06T07:45:00Z'), version: 1 }, siteZone, preferences, now: at('2026-01-05T21:00:00Z') }).planned).toMatchObject([{ occasion: 'change 1 by call', channel: 'call', dueAt: at('2026-01-05T21:00:00Z') }])
+    expect(explainPlan({ occasion: { kind: 'visit-cancelled', startsAt: at('2026-01-06T08:00:00Z'), version: 1 }, siteZone, preferences, now: at('2026-01-05T21:00:00Z') }).planned).toMatchObject([{ channel: 'call' }])
+  })
+
+  it('says why drops reminders are not planned', () => {
+    const drops = (changed: Partial<ContactPreferences>) => explainPlan({ occasion: { kind: 'drops-change', dates: ['2026-01-20'] }, siteZone, preferences: { ...preferences, ...changed }, now })
+    expect(drops({ wantsDropsReminders: false })).toEqual({ planned: [], skipped: [{ kind: 'drops.change', occasion: 'step 2026-01-20', why: 'not-wanted' }] })
+    expect(drops({ hasMobile: false, hasEmail: false }).skipped).toEqual([{ kind: 'drops.change', occasion: 'step 2026-01-20', why: 'not-wanted' }])
+  })
+
+  it('asks again at the moment of leaving', () => {
+    expect(mayLeaveAt('visit.reminder', at('2026-07-01T06:59:00Z'), siteZone)).toBe(false)
+    expect(mayLeaveAt('visit.reminder', at('2026-07-01T07:00:00Z'), siteZone)).toBe(true)
+    expect(mayLeaveAt('visit.reminder', at('2026-07-01T19:00:00Z'), siteZone)).toBe(false)
+    expect(mayLeaveAt('dayone.morning', at('2026-07-01T06:00:00Z'), siteZone)).toBe(true)
+    expect(mayLeaveAt('alert.surgeon', at('2026-07-01T02:00:00Z'), siteZone)).toBe(true)
+    expect(mayLeaveAt('answer.worried', at('2026-07-01T02:00:00Z'), siteZone)).toBe(true)
   })
 })
 

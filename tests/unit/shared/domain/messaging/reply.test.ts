@@ -100,6 +100,48 @@ describe('a reply about the visit', () => {
   })
 })
 
+describe('the whole reading', () => {
+  it.each([
+    ['STOP please', undefined, { meaning: 'stop', confirms: false, because: ['stop'], needsPerson: false }],
+    ['Start', undefined, { meaning: 'start', confirms: false, because: ['start'], needsPerson: false }],
+    ['Wrong number', undefined, { meaning: 'wrong-person', confirms: false, because: ['wrong number'], needsPerson: true }],
+    ['I can’t come', undefined, { meaning: 'cannot-come', confirms: false, because: ['cannot come'], needsPerson: true }],
+    ['can’t come, sorry', undefined, { meaning: 'cannot-come', confirms: false, because: ['cannot come'], needsPerson: false }],
+    ['Can’t come', undefined, { meaning: 'cannot-come', confirms: false, because: ['cannot come'], needsPerson: false }],
+    ['CHANGE', undefined, { meaning: 'cannot-come', confirms: false, because: ['change'], needsPerson: false }],
+    ['cancel', undefined, { meaning: 'ambiguous', confirms: false, because: ['cancel'], needsPerson: false }],
+    ['END', undefined, { meaning: 'ambiguous', confirms: false, because: ['end'], needsPerson: false }],
+    ['no', 'visit', { meaning: 'cannot-come', confirms: false, because: ['no'], needsPerson: false }],
+    ['no', undefined, { meaning: 'ambiguous', confirms: false, because: ['no'], needsPerson: false }],
+    ['no', 'symptoms', { meaning: 'words', confirms: false, because: ['no'], needsPerson: true }],
+    ['yes', 'symptoms', { meaning: 'worried', confirms: false, because: ['yes'], needsPerson: true }],
+    ['👍', 'symptoms', { meaning: 'worried', confirms: false, because: ['👍'], needsPerson: true }],
+    ['which door', 'symptoms', { meaning: 'words', confirms: false, because: [], needsPerson: true }],
+    ['yes, but it hurts', 'symptoms', { meaning: 'worried', confirms: false, because: ['hurts'], needsPerson: true }],
+    ['yes no', undefined, { meaning: 'ambiguous', confirms: false, because: ['yes'], needsPerson: true }],
+    ['ok thanks', undefined, { meaning: 'confirm', confirms: true, because: ['ok thanks'], needsPerson: false }],
+    ['yes', 'visit', { meaning: 'confirm', confirms: true, because: ['yes'], needsPerson: false }],
+    ['👍', 'visit', { meaning: 'confirm', confirms: true, because: ['👍'], needsPerson: false }],
+    ['Many thanks nurse, yes', undefined, { meaning: 'confirm', confirms: true, because: ['yes'], needsPerson: false }],
+    ['Help', undefined, { meaning: 'worried', confirms: false, because: ['help'], needsPerson: true }],
+    ['hello', undefined, { meaning: 'words', confirms: false, because: [], needsPerson: false }],
+  ] as const)('%s, asked %s', (text, asked, expected) => {
+    expect(classifyReply(text, asked)).toEqual(expected)
+  })
+
+  it('is answered by its own message', () => {
+    expect(replyMeanings.map(each => answerFor(each))).toEqual(['answer.worried', 'answer.stopped', 'answer.started', 'answer.cannot-come', 'answer.which', undefined, 'answer.confirmed', 'answer.received'])
+  })
+
+  it('folds what telephones write differently', () => {
+    expect(normaliseReply('  I’ll  COME… won’t, isn´t; couldn`t  ')).toBe('i will come will not is not could not')
+    expect(normaliseReply('Łódź ćma')).toBe('lodz cma')
+    expect(normaliseReply('نَعَـــم، ٱلرؤية')).toBe('نعم الرويه')
+    expect(normaliseReply('ٹھیک')).toBe(normaliseReply('ٹھيك'))
+    expect(normaliseReply('ਖ਼ੂਨ')).toBe(normaliseReply('ਖੂਨ'))
+  })
+})
+
 describe('any reply', () => {
   it('means the same in capitals, with punctuation and spaces around it', () => {
     fc.assert(fc.property(listedWords, fc.constantFrom('', '!', '...', '!!', ' 🙂'), (text, tail) => {
@@ -125,7 +167,7 @@ describe('folding', () => {
 })
 
 describe('an answer to an alert', () => {
-  it.each([['HAVE', 'have'], ['have.', 'have'], ['I have it', 'have'], ['HAND ON', 'hand-on'], ['on', 'hand-on'], ['I have a question', 'words'], ['ok', 'words'], ['', 'words']] as const)('%s is %s', (text, expected) => {
+  it.each([['HAVE', 'have'], ['have.', 'have'], ['I have it', 'have'], ['HAND ON', 'hand-on'], ['on', 'hand-on'], ['I have a question', 'words'], ['they have', 'words'], ['got it', 'have'], ['on my way', 'words'], ['come on', 'words'], ['ok', 'words'], ['', 'words']] as const)('%s is %s', (text, expected) => {
     expect(classifyAlertReply(text)).toBe(expected)
   })
 })

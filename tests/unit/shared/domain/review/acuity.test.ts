@@ -20,14 +20,14 @@ describe('reading acuity', () => {
   it.each([
     ['6/9', 0.18], [' 6 / 9 ', 0.18], ['6/9-2', 0.22], ['6/9 -2', 0.22], ['6/9−2', 0.22], ['6⁄9', 0.18], ['6/9+1', 0.16], ['20/30+1', 0.16],
     ['6/7,5', 0.1], ['0.2 logMAR', 0.2], ['logMAR 0.2', 0.2], ['0.2LOGMAR', 0.2], ['-0.1 logMAR', -0.1], ['+0,3 logmar', 0.3], ['.5 logMAR', 0.5],
-    ['70 letters', 0.3], ['70L', 0.3], ['70 ETDRS', 0.3], ['ETDRS 70', 0.3], ['0 letters', 1.7], ['3/60', 1.3], ['6/3', -0.3], ['20/2000', 2],
+    ['70 letters', 0.3], ['70L', 0.3], ['70 ETDRS', 0.3], ['ETDRS 70', 0.3], ['ETDRS70', 0.3], ['1 letter', 1.68], ['70 lets', 0.3], ['70 ltr', 0.3], ['70 ETDRS letters', 0.3], ['logMAR:.25', 0.25], ['logmar -0.1', -0.1], ['log mar 1', 1], ['0 letters', 1.7], ['3/60', 1.3], ['6/3', -0.3], ['20/2000', 2],
     ['0.8', 0.1], ['1.0', 0], ['0,5', 0.3], ['1.2', -0.08],
   ])('reads %s as %d', (text, logMar) => {
     expect(parseAcuity(text)).toEqual({ logMar, entered: text.trim().replace(/\s+/g, ' ') })
   })
 
   it.each([
-    ['CF', 'CF'], ['c.f.', 'CF'], ['counting fingers', 'CF'], ['Counts fingers', 'CF'], ['CF 1m', 'CF'], ['CF @ 30 cm', 'CF'], ['counting fingers at 1 metre', 'CF'],
+    ['CF', 'CF'], ['c.f.', 'CF'], ['counting fingers', 'CF'], ['Counts fingers', 'CF'], ['CF 1m', 'CF'], ['CF @ 30 cm', 'CF'], ['CF 0.5m', 'CF'], ['CF1m', 'CF'], ['CF at 2 ft', 'CF'], ['count fingers', 'CF'], ['countsfingers', 'CF'], ['hand movement', 'HM'], ['hand motions', 'HM'], ['PL (poor projection)', 'PL'], ['PL proj', 'PL'], ['no perception', 'NPL'], ['no light', 'NPL'], ['No PL', 'NPL'], ['counting fingers at 1 metre', 'CF'],
     ['HM', 'HM'], ['hand movements', 'HM'], ['Hand Motion', 'HM'], ['PL', 'PL'], ['LP', 'PL'], ['perception of light', 'PL'], ['Light only', 'PL'],
     ['PL with good projection', 'PL'], ['NPL', 'NPL'], ['NLP', 'NPL'], ['no perception of light', 'NPL'], ['No light perception', 'NPL'],
   ] as const)('reads %s as %s and keeps the words', (text, lowVision) => {
@@ -42,6 +42,9 @@ describe('reading acuity', () => {
   it.each([
     ['6', '6/9', '6/6', '6 letters'], ['1', '1.0', '1 logMAR', '1/60'], ['70', '6/70', '70 letters'], ['20', '20/30', '20 letters'], ['0', 'NPL', '6/6'],
     ['-0.1', '"-0.1 logMAR"'], ['0.0', '0.0 logMAR'], ['9/6', 'Did you mean 6/9?'], ['6/9p', '6/9-2'], ['6/9 part', '6/9-2'], ['6/9-', '6/9-2'], ['N5', 'near vision'],
+    ['10 letters 6/9', 'not understood'], ['logMAR', 'not understood'], ['0.2 logMAR 6/9', 'not understood'], ['x 0.2 logMAR', 'not understood'], ['70 lettersx', 'not understood'],
+    ['CFx', 'not understood'], ['not CF', 'not understood'], ['HMx', 'not understood'], ['no HM', 'not understood'], ['PL?x', 'not understood'], ['maybe PL', 'not understood'], ['NPLx', 'not understood'], ['a NPL', 'not understood'],
+    ['2', '2/60', '"2.0" for decimal'], ['3', '3/60', '"3 letters"'], ['5', '5/60', '6/5'], ['12', '6/12', '"12 letters"'], ['120', 'Enter 6/120.'], ['121', 'Enter 6/9,'], ['7/6', 'up to 6 metres, or 20 feet'], ['9/7', 'up to 6 metres'],
     ['NI', 'same value'], ['6/9 PH', 'box each'], ['6/9-6/12', 'not one value'], ['good', 'Enter 6/9'],
   ])('refuses %s as unclear and says what to enter', (text, ...says) => {
     const error = refusal(text)
@@ -52,6 +55,27 @@ describe('reading acuity', () => {
 
   it.each(['20/6', '6/2', '6/0', '0/6', '6/9-5', '6/9+9', '3 logMAR', '-0.4 logMAR', '101 letters', '1/300', '9.5', '0.001', '6/99999'])('refuses %s as out of range', (text) => {
     expect(refusal(text).code).toBe('review.acuity-out-of-range')
+  })
+
+  it('never suggests what it would refuse', () => {
+    for (let value = 0; value <= 130; value++) {
+      const quoted = [...refusal(String(value)).message.matchAll(/"([^"]+)"|\b(\d+\/\d+(?:\.\d+)?)/g)].map(match => match[1] ?? match[2] ?? '')
+      for (const suggestion of quoted) expect(() => readAcuity(suggestion), `${value}: ${suggestion}`).not.toThrow()
+    }
+  })
+
+  it('says the limit that was passed', () => {
+    expect(refusal('6/2').fields).toEqual([{ field: 'acuityUnaided', code: 'out-of-range', message: '6/2 is better than 6/3, the best that is recorded. Check the numbers.', limit: '6/3' }])
+    expect(refusal('1/300').fields[0]).toMatchObject({ message: '1/300 is beyond any chart. Enter CF, HM, PL or NPL.', limit: '2.0 logMAR' })
+    expect(refusal('101 letters').fields[0]).toMatchObject({ message: '101 letters: a letter score is 0 to 100.', limit: '100 letters' })
+    expect(refusal('6/9-5').fields[0]).toMatchObject({ message: '6/9-5: 1 to 4 letters can follow a line; five letters are a whole line.', limit: '4 letters' })
+    expect(refusal('6/9-0').fields[0]).toMatchObject({ limit: '4 letters' })
+    expect(refusal('6/9-12').fields[0]).toMatchObject({ limit: '4 letters' })
+    expect(refusal('6/0').message).toBe('6/0: neither number can be 0.')
+  })
+
+  it('names how an entry was understood', () => {
+    expect(['6/9', '20/30', '0.8', '0.2 logMAR', '70 letters', 'CF'].map(text => readAcuity(text).notation)).toEqual(['metres', 'feet', 'decimal', 'logmar', 'letters', 'low-vision'])
   })
 
   it('refuses nothing as required, not as full sight', () => {
