@@ -1,5 +1,5 @@
-import { and, asc, desc, eq, gte, inArray, isNull, ne, sql } from 'drizzle-orm'
-import { escalations, inboundTexts, messages, patients, visits } from '#server/db/schema/index'
+import { and, asc, desc, eq, gte, inArray, isNull, lte, ne, sql } from 'drizzle-orm'
+import { escalations, inboundTexts, messageEvents, messages, patients, visits } from '#server/db/schema/index'
 import { replySites } from '#server/policies/messaging'
 import type { ServiceContext } from '#server/services/context'
 
@@ -15,7 +15,9 @@ export async function listReplies(ctx: ServiceContext, input: { limit: number })
       .where(and(inArray(inboundTexts.siteId, siteIds), isNull(inboundTexts.handledAt)))
       .orderBy(sql`${inboundTexts.meaning} <> 'worried'`, asc(inboundTexts.receivedAt)).limit(input.limit),
     ctx.db.select({ message: messages, patient: patients }).from(messages).innerJoin(patients, eq(patients.id, messages.patientId))
-      .where(and(inArray(messages.siteId, siteIds), inArray(messages.state, ['failed', 'held'])))
+      .where(and(inArray(messages.siteId, siteIds), inArray(messages.state, ['failed', 'held']), lte(messages.dueAt, new Date(ctx.now.getTime() + 86_400_000)),
+        // A failed text that left again by e-mail needs nobody, unless that failed as well.
+        sql`not exists (select 1 from ${messageEvents} e where e.message_id = ${messages.id} and e.kind = 'fell-back')`))
       .orderBy(desc(messages.createdAt)).limit(input.limit),
     ctx.db.select({ n: sql<number>`count(*)::int` }).from(inboundTexts).where(and(inArray(inboundTexts.siteId, siteIds), gte(inboundTexts.receivedAt, dayAgo), isNull(inboundTexts.handledBy), sql`${inboundTexts.handledAt} is not null`)),
   ])

@@ -49,25 +49,38 @@ export async function makeLink(tx: Transaction, input: { patientId: string, path
 
 async function insertOnce(tx: Transaction, rows: NewMessage[], now: Date): Promise<void> {
   if (!rows.length) return
-  const inserted = await tx.insert(messages).values(rows).onConflictDoNothing().returning({ id: messages.id })
-  if (inserted.length) await tx.insert(messageEvents).values(inserted.map(row => ({ messageId: row.id, at: now, kind: 'queued' })))
+  const inserted = await tx.insert(messages).values(rows).onConflictDoNothing().returning({ id: messages.id, state: messages.state })
+  if (inserted.length) await tx.insert(messageEvents).values(inserted.map(row => ({ messageId: row.id, at: now, kind: row.state })))
 }
 
 export interface PatientMessageInput { occasion: Occasion, patient: Patient, pathway: Pathway, site: Site, visit?: Visit, subjectKey: string, values: TemplateValues, now: Date }
 
-/** Plans one occasion and writes its rows in the caller's transaction. A `call` is shown to the nurse; it is not a message. */
+/** Why a person has to ring instead. */
+function whyCall(patient: Patient): string {
+  if (patient.messageConsent === null) return 'not yet asked about messages'
+  if (!patient.messageConsent) return 'wants no messages'
+  if (patient.textsStoppedAt) return 'stopped texts, no e-mail address'
+  return patient.preferredChannel === 'call' ? 'prefers a call' : 'cannot be reached in time by message'
+}
+
+/** Plans one occasion and writes its rows in the caller's transaction. A `call` is written as held, with its reason: the nurse's list shows it. */
 export async function queuePatientMessages(tx: Transaction, input: PatientMessageInput): Promise<void> {
   const { patient, pathway, site, visit, now } = input
+  if (patient.diedOn) return
   const planned = planMessages({ occasion: input.occasion, siteZone: site.zone, preferences: preferencesOf(patient), now })
   const rows: NewMessage[] = []
+  const about = { recipientKey: `patient:${patient.id}`, subjectKey: input.subjectKey, patientId: patient.id, pathwayId: pathway.id, visitId: visit?.id ?? null, siteId: site.id, createdAt: now }
   for (const message of planned) {
-    if (message.channel === 'call') continue
+    if (message.channel === 'call') {
+      const rendered = renderTemplate({ kind: message.kind, channel: 'text', language: 'en', values: { phone: site.phone, link: origin(), ...input.values } })
+      rows.push({ ...about, kind: message.kind, occasion: message.occasion, channel: 'text', toAddress: patient.phone ?? '', body: rendered.text, dueAt: message.dueAt, expiresAt: message.expiresAt, state: 'held', lastError: whyCall(patient) })
+      continue
+    }
     const link = await makeLink(tx, { patientId: patient.id, pathwayId: pathway.id, visitId: visit?.id ?? null, now })
     const rendered = renderTemplate({ kind: message.kind, channel: message.channel, language: languageOf(patient), values: { phone: site.phone, link, ...input.values } })
     rows.push({
-      kind: message.kind, recipientKey: `patient:${patient.id}`, subjectKey: input.subjectKey, occasion: message.occasion, channel: message.channel,
-      patientId: patient.id, pathwayId: pathway.id, visitId: visit?.id ?? null, siteId: site.id, toAddress: (message.channel === 'text' ? patient.phone : patient.email) ?? '',
-      subject: rendered.subject ?? '', body: rendered.text, language: rendered.language, dueAt: message.dueAt, expiresAt: message.expiresAt, createdAt: now,
+      ...about, kind: message.kind, occasion: message.occasion, channel: message.channel, toAddress: (message.channel === 'text' ? patient.phone : patient.email) ?? '',
+      subject: rendered.subject ?? '', body: rendered.text, language: rendered.language, dueAt: message.dueAt, expiresAt: message.expiresAt,
     })
   }
   await insertOnce(tx, rows, now)

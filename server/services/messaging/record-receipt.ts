@@ -3,6 +3,7 @@ import { z } from 'zod'
 import { messageEvents, messages } from '#server/db/schema/index'
 import { notifyLive } from '#server/services/audit/notify-live'
 import type { SystemContext } from '#server/services/context'
+import { fallBackToEmail } from '#server/services/messaging/fall-back'
 
 export interface Receipt { providerId: string, status: string, errorCode?: string, marker: string | null }
 
@@ -16,6 +17,7 @@ export async function recordReceipt(ctx: SystemContext, receipt: Receipt): Promi
     if (!row || row.state === state || row.state === 'delivered') return undefined
     await tx.update(messages).set({ state, providerId: receipt.providerId, leaseUntil: null, inDoubtSince: null, ...(state === 'delivered' ? { deliveredAt: ctx.now } : { lastError: `not delivered (${receipt.errorCode ?? 'no reason given'})` }) }).where(eq(messages.id, row.id))
     await tx.insert(messageEvents).values({ messageId: row.id, at: ctx.now, kind: state === 'delivered' ? 'delivered' : 'not-delivered', detail: receipt.errorCode ? { errorCode: receipt.errorCode } : {} })
+    if (state === 'failed') await fallBackToEmail(tx, row, ctx.now)
     return row
   })
   if (changed) await notifyLive(ctx.db, 'message', changed.siteId, [changed.id])

@@ -4,6 +4,7 @@ import { sendMail } from '#server/gateways/mail'
 import { findText, sendText } from '#server/gateways/text'
 import type { SendResult } from '#server/gateways/text'
 import { notifyLive } from '#server/services/audit/notify-live'
+import { fallBackToEmail } from '#server/services/messaging/fall-back'
 import type { SystemContext } from '#server/services/context'
 
 type Row = typeof messages.$inferSelect
@@ -63,6 +64,7 @@ async function record(ctx: SystemContext, row: Row, result: SendResult, at: Date
     }
     else if (result.outcome === 'refused' && (result.permanent || row.attempts >= mostAttempts)) {
       await tx.update(messages).set({ state: 'failed', leaseUntil: null, inDoubtSince: null, lastError: result.why }).where(eq(messages.id, row.id))
+      await fallBackToEmail(tx, row, at)
     }
     else {
       // Still to be sent: later, and when in doubt only after the provider has been asked.
@@ -76,7 +78,7 @@ async function record(ctx: SystemContext, row: Row, result: SendResult, at: Date
 /** A message past its purpose is never sent late: it expires, and shows as expired. One in doubt is settled first. */
 async function expireLate(ctx: SystemContext, now: Date): Promise<void> {
   await ctx.db.transaction(async (tx) => {
-    const late = await tx.update(messages).set({ state: 'expired' }).where(and(eq(messages.state, 'queued'), lte(messages.expiresAt, now), isNull(messages.inDoubtSince))).returning({ id: messages.id })
+    const late = await tx.update(messages).set({ state: 'expired' }).where(and(inArray(messages.state, ['queued', 'held']), lte(messages.expiresAt, now), isNull(messages.inDoubtSince))).returning({ id: messages.id })
     if (late.length) await tx.insert(messageEvents).values(late.map(row => ({ messageId: row.id, at: now, kind: 'expired' })))
   })
 }
