@@ -25,6 +25,8 @@ export async function startFakes(options: FakesOptions): Promise<RunningFakes> {
     const send = response.end.bind(response)
     response.end = ((...given: Parameters<typeof send>) => {
       request.socket.destroy()
+      // The mocked network error carries the status 0, which cannot be written even to a connection that is gone.
+      response.statusCode = 500
       return send(...given)
     }) as typeof response.end
     next()

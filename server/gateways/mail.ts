@@ -1,9 +1,10 @@
 import nodemailer from 'nodemailer'
+import type { Transporter } from 'nodemailer'
 import type { SendResult } from '#server/gateways/text'
 
 export interface MailToSend { id: string, to: string, subject: string, body: string, calendar?: string | null }
 
-let transport: nodemailer.Transporter | undefined
+let transport: Transporter | undefined
 
 /** One pooled transport per process. The Message-ID is the message row's own id, so that a mail server can drop a second copy. */
 export async function sendMail(mail: MailToSend): Promise<SendResult> {

@@ -1,7 +1,6 @@
 import https from 'node:https'
 import http from 'node:http'
 import twilio from 'twilio'
-import type { RequestOptions, Response } from 'twilio'
 
 /** What a send can end in. `unknown` means that the provider may or may not have it: ask before sending again. */
 export type SendResult = { outcome: 'sent', providerId: string } | { outcome: 'refused', why: string, permanent: boolean } | { outcome: 'unknown', why: string }
@@ -10,6 +9,10 @@ export interface TextToSend { to: string, body: string, marker: string, notBefor
 
 const timeoutMs = 15_000
 
+/** What the SDK hands to its client, and what it reads from the answer. */
+interface SdkRequest { method: string, uri: string, username?: string, password?: string, params?: object, data?: object }
+interface SdkAnswer { statusCode: number, body: unknown, headers: http.IncomingHttpHeaders }
+
 /** The SDK's own client has a fixed host and no keep-alive; this one swaps the host and keeps connections. */
 class KeepAliveClient {
   private readonly agent: http.Agent
@@ -17,7 +20,7 @@ class KeepAliveClient {
     this.agent = host?.startsWith('http:') ? new http.Agent({ keepAlive: true, maxSockets: 32 }) : new https.Agent({ keepAlive: true, maxSockets: 32 })
   }
 
-  request(options: RequestOptions<unknown>): Promise<Response<unknown>> {
+  request(options: SdkRequest): Promise<SdkAnswer> {
     const wanted = new URL(options.uri)
     const url = this.host ? new URL(wanted.pathname, this.host) : wanted
     for (const [name, value] of Object.entries((options.params ?? {}) as Record<string, unknown>)) url.searchParams.set(name, String(value))
@@ -28,7 +31,7 @@ class KeepAliveClient {
       const request = send(url, { method: options.method.toUpperCase(), agent: this.agent, timeout: timeoutMs, headers: { 'authorization': `Basic ${Buffer.from(`${options.username}:${options.password}`).toString('base64')}`, 'content-type': 'application/x-www-form-urlencoded', 'content-length': Buffer.byteLength(body), 'accept': 'application/json' } }, (answer) => {
         const parts: Buffer[] = []
         answer.on('data', (part: Buffer) => parts.push(part))
-        answer.on('end', () => resolve({ statusCode: answer.statusCode ?? 0, body: parseJson(Buffer.concat(parts).toString('utf8')), headers: answer.headers } as unknown as Response<unknown>))
+        answer.on('end', () => resolve({ statusCode: answer.statusCode ?? 0, body: parseJson(Buffer.concat(parts).toString('utf8')), headers: answer.headers }))
         answer.on('error', reject)
       })
       request.on('timeout', () => request.destroy(new Error('the text service did not answer in time')))
@@ -66,7 +69,8 @@ export async function sendText(text: TextToSend): Promise<SendResult> {
   catch (error) {
     const { status, code, message } = error as { status?: number, code?: number | string, message?: string }
     const why = `${code ?? status ?? 'no answer'}: ${message ?? ''}`.slice(0, 200)
-    if (status === undefined || status >= 500) return { outcome: status === undefined ? 'unknown' : 'refused', why, permanent: false }
+    // A failure on their side says nothing about whether the text was taken.
+    if (status === undefined || status >= 500) return { outcome: 'unknown', why }
     return { outcome: 'refused', why, permanent: status !== 429 }
   }
 }

@@ -8,6 +8,8 @@ import { fallBackToEmail } from '#server/services/messaging/fall-back'
 import type { SystemContext } from '#server/services/context'
 
 type Row = typeof messages.$inferSelect
+/** `late`: not with the provider, and past its purpose while it was in doubt. */
+type Outcome = SendResult | { outcome: 'late', why: string }
 
 const batch = 25
 const leaseMs = 60_000
@@ -39,11 +41,13 @@ async function claim(ctx: SystemContext, leaseForMs: number): Promise<(Row & { w
 }
 
 async function sendOne(ctx: SystemContext, row: Row & { wasInDoubt: boolean }, clock: () => Date): Promise<void> {
-  const result = row.channel === 'text' ? await sendTextOnce(row, ctx.now) : await sendMail({ id: row.id, to: row.toAddress, subject: row.subject, body: row.body, calendar: row.calendar })
+  const result = row.channel === 'text' ? await sendTextOnce(row, ctx.now) : row.expiresAt <= ctx.now ? late : await sendMail({ id: row.id, to: row.toAddress, subject: row.subject, body: row.body, calendar: row.calendar })
   await record(ctx, row, result, clock())
 }
 
-async function sendTextOnce(row: Row & { wasInDoubt: boolean }, now: Date): Promise<SendResult> {
+const late: Outcome = { outcome: 'late', why: 'too late to be of use' }
+
+async function sendTextOnce(row: Row & { wasInDoubt: boolean }, now: Date): Promise<Outcome> {
   const text = { to: row.toAddress, body: row.body, marker: row.id, notBefore: row.inDoubtSince ?? now }
   if (row.wasInDoubt) {
     try {
@@ -54,22 +58,27 @@ async function sendTextOnce(row: Row & { wasInDoubt: boolean }, now: Date): Prom
       return { outcome: 'unknown', why: `the text service could not be asked: ${(error as Error).message}`.slice(0, 200) }
     }
   }
-  return sendText(text)
+  return row.expiresAt <= now ? late : sendText(text)
 }
 
-async function record(ctx: SystemContext, row: Row, result: SendResult, at: Date): Promise<void> {
+async function record(ctx: SystemContext, row: Row, result: Outcome, at: Date): Promise<void> {
+  // A receipt may have come before our own record: what it said stands.
+  const stillOurs = and(eq(messages.id, row.id), eq(messages.state, 'sending'))
   await ctx.db.transaction(async (tx) => {
     if (result.outcome === 'sent') {
-      await tx.update(messages).set({ state: sql`case when ${messages.state} = 'delivered' then 'delivered' else 'sent' end`, providerId: result.providerId, sentAt: at, leaseUntil: null, inDoubtSince: null, lastError: null }).where(eq(messages.id, row.id))
+      await tx.update(messages).set({ state: sql`case when ${messages.state} in ('delivered', 'failed') then ${messages.state} else 'sent' end`, providerId: result.providerId, sentAt: at, leaseUntil: null, inDoubtSince: null, lastError: null }).where(eq(messages.id, row.id))
+    }
+    else if (result.outcome === 'late') {
+      await tx.update(messages).set({ state: 'expired', leaseUntil: null, inDoubtSince: null, lastError: result.why }).where(stillOurs)
     }
     else if (result.outcome === 'refused' && (result.permanent || row.attempts >= mostAttempts)) {
-      await tx.update(messages).set({ state: 'failed', leaseUntil: null, inDoubtSince: null, lastError: result.why }).where(eq(messages.id, row.id))
+      await tx.update(messages).set({ state: 'failed', leaseUntil: null, inDoubtSince: null, lastError: result.why }).where(stillOurs)
       await fallBackToEmail(tx, row, at)
     }
     else {
       // Still to be sent: later, and when in doubt only after the provider has been asked.
       const waitMs = Math.min(5 * 60_000, 2_000 * 2 ** row.attempts)
-      await tx.update(messages).set({ state: 'queued', leaseUntil: new Date(at.getTime() + waitMs), inDoubtSince: result.outcome === 'unknown' ? sql`${messages.inDoubtSince}` : null, lastError: result.why }).where(eq(messages.id, row.id))
+      await tx.update(messages).set({ state: 'queued', leaseUntil: new Date(at.getTime() + waitMs), inDoubtSince: result.outcome === 'unknown' ? sql`${messages.inDoubtSince}` : null, lastError: result.why }).where(stillOurs)
     }
     await tx.insert(messageEvents).values({ messageId: row.id, at, kind: result.outcome === 'sent' ? 'sent' : 'not-sent', detail: result.outcome === 'sent' ? {} : { why: result.why } })
   })
