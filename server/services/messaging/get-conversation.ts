@@ -19,7 +19,7 @@ export async function loadCorrespondent(db: Queryable, actor: Actor, patientId: 
 export async function getConversation(ctx: ServiceContext, patientId: string) {
   const whose = await loadCorrespondent(ctx.db, ctx.actor, patientId)
   const [sent, received, booked, [escalation]] = await Promise.all([
-    ctx.db.select().from(messages).where(eq(messages.patientId, patientId)).orderBy(desc(messages.dueAt)).limit(120),
+    ctx.db.select().from(messages).where(and(eq(messages.patientId, patientId), eq(messages.recipientKey, `patient:${patientId}`))).orderBy(desc(messages.dueAt)).limit(120),
     ctx.db.select().from(inboundTexts).where(eq(inboundTexts.patientId, patientId)).orderBy(desc(inboundTexts.receivedAt)).limit(120),
     ctx.db.select().from(visits).where(and(eq(visits.patientId, patientId), gte(visits.startsAt, new Date(ctx.now.getTime() - 30 * 86_400_000)), inArray(visits.state, ['booked', 'arrived', 'with-optometrist', 'done', 'missing']))).orderBy(asc(visits.startsAt)),
     ctx.db.select().from(escalations).where(and(eq(escalations.patientId, patientId), ne(escalations.state, 'closed'))).limit(1),

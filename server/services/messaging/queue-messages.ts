@@ -117,6 +117,18 @@ export async function queueAlert(tx: Transaction, { escalation, person, rung, no
   }), now)
 }
 
+export interface LetterInput { pathway: Pathway, site: Site, toEmail: string, link: string, version: number, now: Date }
+
+/** Tells a referrer that a letter is ready: a link behind sign-in, no name and nothing clinical in the mail. */
+export async function queueLetter(tx: Transaction, { pathway, site, toEmail, link, version, now }: LetterInput): Promise<void> {
+  const planned = planMessages({ occasion: { kind: 'letter', version }, siteZone: site.zone, now, preferences: { preferred: 'email', hasMobile: false, hasEmail: true, textsStopped: false, wantsDropsReminders: false } })
+  await insertOnce(tx, planned.flatMap((message) => {
+    if (message.channel === 'call') return []
+    const rendered = renderTemplate({ kind: message.kind, channel: 'email', language: 'en', values: { link, phone: site.phone } })
+    return [{ kind: message.kind, recipientKey: `referrer:${toEmail}`, subjectKey: `pathway:${pathway.id}`, occasion: message.occasion, channel: 'email' as const, patientId: pathway.patientId, pathwayId: pathway.id, siteId: site.id, toAddress: toEmail, subject: rendered.subject ?? '', body: rendered.text, language: 'en', dueAt: message.dueAt, expiresAt: message.expiresAt, createdAt: now }]
+  }), now)
+}
+
 export interface WithdrawInput { visitId?: string, pathwayId?: string, escalationId?: string, why: string, now: Date }
 
 /** Takes back what has not been sent. What is on its way or sent stays in the history. */
