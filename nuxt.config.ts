@@ -20,7 +20,10 @@ export default defineNuxtConfig({
   },
   nitro: {
     experimental: { openAPI: false },
-    externals: { trace: true },
+    externals: {
+      // Node 20 takes the `module-sync` export of these, which the build's tracer does not know and would leave behind.
+      traceInclude: ['async-function', 'generator-function', 'async-generator-function'].map(name => `node_modules/${name}/require.mjs`),
+    },
     esbuild: { options: { target: 'node20' } },
   },
   security: {
