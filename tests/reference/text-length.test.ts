@@ -81,6 +81,11 @@ describe('length of a text', () => {
   it('says how much shorter would save a part, and what is left', () => {
     expect(measureText(A(180))).toMatchObject({ parts: 2, unitsToSaveAPart: 20, unitsLeft: 126 })
     expect(measureText(A(160 - 20))).toMatchObject({ parts: 1, unitsToSaveAPart: 0, unitsLeft: 20 })
+    expect(measureText('ł'.repeat(60))).toMatchObject({ parts: 1, unitsLeft: 10 })
+    expect(measureText('ł'.repeat(100))).toMatchObject({ parts: 2, unitsLeft: 34, unitsToSaveAPart: 30 })
+    expect(measureText('ł'.repeat(140))).toMatchObject({ parts: 3, unitsLeft: 61, unitsToSaveAPart: 6 })
+    expect(measureText('')).toEqual({ encoding: 'GSM-7', units: 0, parts: 0, unitsLeft: 160, unitsToSaveAPart: 0, costlyCharacters: [] })
+    expect(measureText('łął').costlyCharacters).toEqual(['ł', 'ą'])
     expect(measureText(A(310))).toMatchObject({ parts: 3, unitsToSaveAPart: 4 })
     fc.assert(fc.property(fc.integer({ min: 1, max: 700 }), (count) => {
       const { parts, unitsToSaveAPart, unitsLeft } = measureText(A(count))
@@ -117,6 +122,8 @@ describe('plain punctuation', () => {
 
   it('never alters names or letters', () => {
     expect(plainPunctuation('Ask for Siân O’Hara’s nurse’s room', ['Siân O’Hara'])).toBe('Ask for Siân O’Hara\'s nurse\'s room')
+    expect(plainPunctuation('O’Hara’s and O’Hara', ['O’Hara', 'O’Hara’s', ''])).toBe('O’Hara’s and O’Hara')
+    expect(plainPunctuation('a.c’ abc’', ['a.c’'])).toBe('a.c’ abc\'')
     expect(plainPunctuation('Żółw Łódź Ŵyn ça')).toBe('Żółw Łódź Ŵyn ça')
     fc.assert(fc.property(fc.string({ unit: 'grapheme', minLength: 1 }), fc.string({ unit: 'grapheme' }), fc.string({ unit: 'grapheme' }), (name, before, after) => {
       expect(plainPunctuation(`${before}${name}${after}`, [name])).toContain(name)

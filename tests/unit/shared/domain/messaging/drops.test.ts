@@ -16,6 +16,31 @@ describe('drops', () => {
     expect(taper(3, 5)).toEqual([{ dosesPerDay: 3, days: 5 }, { dosesPerDay: 2, days: 5 }, { dosesPerDay: 1, days: 5 }])
   })
 
+  it('says who uses what on each day, and each change', () => {
+    const short: DropCourse = { name: 'steroid', startsOn: '2026-03-28', steps: [{ dosesPerDay: 2, days: 2 }, { dosesPerDay: 1, days: 1 }] }
+    const other: DropCourse = { name: 'antibiotic', startsOn: '2026-03-27', steps: [{ dosesPerDay: 4, days: 2 }] }
+    expect(planDrops([short, other])).toEqual([
+      { date: '2026-03-27', doses: [{ name: 'antibiotic', dosesPerDay: 4 }], total: 4 },
+      { date: '2026-03-28', doses: [{ name: 'steroid', dosesPerDay: 2 }, { name: 'antibiotic', dosesPerDay: 4 }], total: 6 },
+      { date: '2026-03-29', doses: [{ name: 'steroid', dosesPerDay: 2 }], total: 2 },
+      { date: '2026-03-30', doses: [{ name: 'steroid', dosesPerDay: 1 }], total: 1 },
+    ])
+    expect(doseChanges(short)).toEqual([{ date: '2026-03-30', name: 'steroid', from: 2, to: 1 }, { date: '2026-03-31', name: 'steroid', from: 1, to: 0 }])
+    expect(stepDownDates([short, other])).toEqual(['2026-03-29', '2026-03-30', '2026-03-31'])
+    expect(planDrops([])).toEqual([])
+  })
+
+  it('counts bottles at their limits', () => {
+    const one = (dosesPerDay: number, days: number): DropCourse => ({ ...good, steps: [{ dosesPerDay, days }] })
+    expect(bottlesFor(one(20, 1), { ...usualBottle, bottleMl: 1 })).toBe(1)
+    expect(bottlesFor(one(20, 3), { ...usualBottle, bottleMl: 1 })).toBe(3)
+    expect(bottlesFor(one(1, 3), { ...usualBottle, keepsDays: 1 })).toBe(3)
+    expect(() => bottlesFor({ ...good, steps: [{ dosesPerDay: 1, days: 1 }, { dosesPerDay: 21, days: 1 }] }, { ...usualBottle, bottleMl: 1 })).toThrow(expect.objectContaining({ code: 'messaging.drops-invalid' }))
+    expect(() => bottlesFor(one(11, 1), { ...usualBottle, bottleMl: 1, dropsPerDose: 2 })).toThrow(expect.objectContaining({ code: 'messaging.drops-invalid' }))
+    expect(dailyDoses({ ...good, steps: taper(20, 1) })).toHaveLength(20)
+    expect(() => dailyDoses({ ...good, steps: [...taper(20, 1), { dosesPerDay: 1, days: 1 }] })).toThrow(expect.objectContaining({ fields: [{ field: 'steps', code: 'out-of-range', message: 'Enter at least one step.', limit: '20 steps' }] }))
+  })
+
   it.each([
     ['name', { name: '  ' }], ['steps', { steps: [] }], ['steps.0.dosesPerDay', { steps: [{ dosesPerDay: 0, days: 7 }] }], ['steps.0.dosesPerDay', { steps: [{ dosesPerDay: 25, days: 7 }] }],
     ['steps.1.days', { steps: [{ dosesPerDay: 4, days: 7 }, { dosesPerDay: 3, days: 0 }] }], ['steps.0.days', { steps: [{ dosesPerDay: 4, days: 1.5 }] }], ['steps.0.days', { steps: [{ dosesPerDay: 4, days: Number.NaN }] }],

@@ -99,7 +99,10 @@ describe('filling a template', () => {
   })
 
   it('refuses placeholders that do not exist', () => {
-    expect(refusal(() => fillTemplate('Dear {name}, {date}', values)).code).toBe('messaging.placeholder-unknown')
+    expect(refusal(() => fillTemplate('Dear {name}, {date}', values))).toMatchObject({
+      code: 'messaging.placeholder-unknown', message: 'There is no placeholder {name}. Use {date}, {time}, {place}, {phone}, {link}, {urgency}, {number}.',
+      fields: [{ field: 'name', code: 'unknown', message: '{name} is not a placeholder.' }],
+    })
     expect(refusal(() => fillTemplate('{constructor}', values)).code).toBe('messaging.placeholder-unknown')
   })
 
@@ -107,6 +110,8 @@ describe('filling a template', () => {
     fc.assert(fc.property(fc.string({ minLength: 1 }).filter(text => text.trim() !== ''), (place) => {
       expect(fillTemplate('at {place}.', { place })).toBe(`at ${place.replace(/\s+/g, ' ').trim()}.`)
     }))
+    expect(fillTemplate('{place}', { place: ' door \n\t C ' })).toBe('door C')
+    expect(fillTemplate('{place} {phone}', { place: 'a (b)-c d', phone: '(01632) 960-118' }, 'ar')).toBe('a (b)-c d 01632960118')
     expect(fillTemplate('{place} {date}', { place: '$& {date} O’Hara', date: 'Monday' })).toBe('$& {date} O’Hara Monday')
   })
 })

@@ -19,6 +19,13 @@ describe('cornea', () => {
     expect(() => endothelialLossPercent(before, after)).toThrow(expect.objectContaining({ code: 'review.cornea-out-of-range' }))
   })
 
+  it('names the field and the limit it refuses', () => {
+    expect(() => thicknessChangePercent(550, 0.6)).toThrow(expect.objectContaining({ message: 'Enter 300 to 1200 micrometres.', fields: [{ field: 'cctUm', code: 'out-of-range', message: 'Enter 300 to 1200 micrometres.', limit: '300 to 1200 micrometres' }] }))
+    expect(() => thicknessChangePercent(0.6, 550)).toThrow(expect.objectContaining({ fields: [expect.objectContaining({ field: 'preoperativeCctUm' })] }))
+    expect(() => endothelialLossPercent(100, 2000)).toThrow(expect.objectContaining({ fields: [expect.objectContaining({ field: 'preoperativeCellsPerMm2', limit: '200 to 5000 cells per mm²' })] }))
+    expect(() => endothelialLossPercent(2000, 100)).toThrow(expect.objectContaining({ fields: [expect.objectContaining({ field: 'cellsPerMm2' })] }))
+  })
+
   it('gives back the second measurement from the first and the change', () => {
     fc.assert(fc.property(fc.integer({ min: 300, max: 1200 }), fc.integer({ min: 300, max: 1200 }), (before, after) => {
       const change = thicknessChangePercent(before, after)!

@@ -18,12 +18,15 @@ describe('inflammation', () => {
   })
 
   it.each([-1, 1.5, Number.NaN, Number.POSITIVE_INFINITY])('refuses a count of %d', (count) => {
-    expect(() => cellGradeOf(count)).toThrow(expect.objectContaining({ name: 'DomainError', code: 'review.cell-count-invalid' }))
+    const message = 'Enter the cells in one 1 mm field as a whole number, 0 or more.'
+    expect(() => cellGradeOf(count)).toThrow(expect.objectContaining({ name: 'DomainError', code: 'review.cell-count-invalid', message, fields: [{ field: 'cells', code: 'out-of-range', message, limit: '0 or more' }] }))
   })
 
   it('compares grades by their order, not by their letters', () => {
     expect(isCellGradeAtLeast('4+', '3+')).toBe(true)
     expect(isCellGradeAtLeast('0.5+', '1+')).toBe(false)
+    expect(isCellGradeAtLeast('2+', '2+')).toBe(true)
+    expect(inflammationTrend('4+', '4+')).toBe('steady')
     expect(flareSteps('1+', '4+')).toBe(3)
   })
 
@@ -41,7 +44,7 @@ describe('inflammation', () => {
       expect(flareSteps(today.mostFlare, tomorrow.mostFlare)).toBeLessThanOrEqual(0)
     }))
     expect(expectedInflammation.every(row => row.source.length > 0)).toBe(true)
-    expect(() => expectedInflammationOn(-1)).toThrow(expect.objectContaining({ code: 'review.day-invalid' }))
+    expect(() => expectedInflammationOn(-1)).toThrow(expect.objectContaining({ code: 'review.day-invalid', fields: [{ field: 'daysAfterSurgery', code: 'out-of-range', message: 'Enter whole days from surgery, 0 or more.' }] }))
   })
 
   it('does not read what was not graded as ordinary', () => {
@@ -50,7 +53,7 @@ describe('inflammation', () => {
   })
 
   it('refuses a share of blood outside 0 to 1', () => {
-    for (const share of [-0.1, 1.1, Number.NaN]) expect(() => hyphaemaGradeOf(share)).toThrow(expect.objectContaining({ code: 'review.hyphaema-invalid' }))
+    for (const share of [-0.1, 1.1, Number.NaN]) expect(() => hyphaemaGradeOf(share)).toThrow(expect.objectContaining({ code: 'review.hyphaema-invalid', fields: [{ field: 'hyphaema', code: 'out-of-range', message: 'Enter a share from 0 to 1.' }] }))
   })
 
   it('defines every grade', () => {
