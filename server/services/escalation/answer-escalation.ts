@@ -24,7 +24,7 @@ const rules: Record<Answer, AnswerRule> = {
   'close': { from: ['acknowledged'], kind: 'closed', event: 'escalation.closed', refusal: 'Acknowledge it first, then close it with what was done.', code: 'escalation.conflict' },
 }
 
-function changeFor(answer: Answer, ctx: ServiceContext, words: string): Partial<Record<keyof Row, unknown>> {
+function changeFor(answer: Answer, ctx: ServiceContext, words: string): Partial<typeof escalations.$inferInsert> {
   if (answer === 'acknowledge') return { state: 'acknowledged', acknowledgedBy: ctx.actor.personId, acknowledgedAt: ctx.now, plan: words, nextRungAt: null }
   if (answer === 'take-over') return { acknowledgedBy: ctx.actor.personId }
   if (answer === 'close') return { state: 'closed', closedBy: ctx.actor.personId, closedAt: ctx.now, closingWords: words, nextRungAt: null }

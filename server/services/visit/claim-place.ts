@@ -17,7 +17,7 @@ export async function lockPlace(tx: Transaction, wanted: { placeId?: string, ses
     .where(which)
     .orderBy(asc(sessionPlaces.startsAt), asc(sessionPlaces.id))
     .limit(1)
-    .for('update', { of: sessionPlaces, skipLocked: !wanted.placeId })
+    .for('update', wanted.placeId ? { of: sessionPlaces } : { of: sessionPlaces, skipLocked: true })
   if (!place) {
     if (wanted.placeId) throw new DomainError('visit.place-not-found', 'There is no such place in a clinic.')
     throw new DomainError('visit.session-full', 'This session has no free place left. Nothing was booked.')
