@@ -90,7 +90,7 @@ test('sign-in, Today, clinics and escalations have no violation of WCAG 2.2 AA t
       await expectAccessible(nurse)
     }
   }
-  const visitor = await browser.newPage()
+  const visitor = await (await browser.newContext()).newPage()
   await visitor.goto(`${product.url}/sign-in`, { waitUntil: 'load' })
   await expectAccessible(visitor)
   expect(faults).toEqual([])
