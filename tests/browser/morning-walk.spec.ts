@@ -78,13 +78,23 @@ test('a nurse marks arrived, an optometrist signs cells 3+ with pain, the surgeo
   await surgeon.getByLabel('What was done').fill('Seen at once, treated, recheck tomorrow.')
   await surgeon.getByRole('button', { name: 'Close with this' }).click()
   await surgeon.getByText('Nothing is waiting for you').waitFor()
+
+  const { rows } = await product.pool.query('select p.id, p.patient_id from pathways p join patients t on t.id = p.patient_id where t.name = \'Hesper Dunmallow\'')
+  await nurse.goto(`${product.url}/patient/${rows[0].patient_id}`, { waitUntil: 'networkidle' })
+  await expectAccessible(nurse)
+  await nurse.getByRole('link', { name: 'Book the next visit' }).first().click()
+  await nurse.waitForURL(/kind=follow-up/)
+  await nurse.getByRole('button', { name: /^Book \d\d:\d\d/ }).last().click()
+  await nurse.getByText(/^Booked: /).waitFor()
+  const { rows: booked } = await product.pool.query('select 1 from visits where pathway_id = $1 and kind = \'first-week\' and state = \'booked\'', [rows[0].id])
+  expect(booked).toHaveLength(1)
   expect(faults).toEqual([])
 })
 
-test('sign-in, Today, clinics and escalations have no violation of WCAG 2.2 AA that axe can find, wide and narrow', async () => {
+test('sign-in, Today, pathways, clinics, escalations and messages have no violation of WCAG 2.2 AA that axe can find, wide and narrow', async () => {
   for (const width of [1440, 390]) {
     const nurse = await openAs('maren.oxlade', width)
-    for (const path of ['/', '/clinic', '/escalations']) {
+    for (const path of ['/', '/pathways', '/clinic', '/escalations', '/messages']) {
       await nurse.goto(`${product.url}${path}`, { waitUntil: 'load' })
       await nurse.locator('h1').first().waitFor()
       await expectAccessible(nurse)

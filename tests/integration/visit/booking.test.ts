@@ -72,6 +72,27 @@ test('a nurse of another site finds neither the visit nor its sheet', async () =
   expect(answer.status).toBe(404)
 })
 
+test('pathways page by keyset without a gap or a repeat, and a practice sees only what is shared with it', async () => {
+  const nurse = await signedIn(product, 'maren.oxlade')
+  const seen: string[] = []
+  let after: string | null = null
+  do {
+    const page: { body: { items: { id: string }[], next: string | null } } = await nurse(`/api/pathway${after ? `?after=${encodeURIComponent(after)}` : ''}`)
+    seen.push(...page.body.items.map(item => item.id))
+    after = page.body.next
+  } while (after)
+  const { rows } = await product.pool.query('select count(*)::int n from pathways where state <> \'closed\' and stage <> \'discharge\'')
+  expect(new Set(seen).size).toBe(seen.length)
+  expect(seen).toHaveLength(rows[0].n)
+
+  const community = await signedIn(product, 'petra.lanyon')
+  const shared = await community<{ items: { id: string }[] }>('/api/pathway')
+  const { rows: theirs } = await product.pool.query('select id from pathways where practice_id is not null and stage <> \'discharge\'')
+  expect(new Set(shared.body.items.map(item => item.id))).toEqual(new Set(theirs.map(row => row.id)))
+  const { rows: other } = await product.pool.query('select patient_id from pathways where practice_id is null and patient_id not in (select patient_id from pathways where practice_id is not null) limit 1')
+  expect((await community(`/api/patient/${other[0].patient_id}`)).status).toBe(404)
+})
+
 test('the application’s role can change neither a signed review nor the audit log', async () => {
   await expect(product.pool.query('update reviews set version = version')).rejects.toThrow('never changed')
   await expect(product.pool.query('delete from audit_rows')).rejects.toThrow('never changed')
