@@ -7,6 +7,7 @@ import { raiseEscalation } from '#server/services/escalation/raise-escalation'
 import { loadVisit } from '#server/services/visit/load-visit'
 import type { MissingStepBody } from '#shared/contracts/visit'
 import { DomainError } from '#shared/domain/errors'
+import { missingPatientReason } from '#shared/domain/escalation/rules'
 
 /** Records a call or text to a missing patient. `not-found` ends the steps and raises visit.missing for a day-one check. */
 export async function logMissingStep(ctx: ServiceContext, input: MissingStepBody & { visitId: string }) {
@@ -18,7 +19,7 @@ export async function logMissingStep(ctx: ServiceContext, input: MissingStepBody
     if (input.step === 'not-found' && visit.kind === 'day-one') {
       await raiseEscalation(tx, {
         pathwayId: visit.pathwayId, raisedBy: ctx.actor.personId, now: ctx.now,
-        reasons: [{ ruleId: 'visit.missing', ruleVersion: 1, urgency: 'today', sentence: 'Not found for the day-one check.', source: 'proposed', findings: { visitId: visit.id } }],
+        reasons: [missingPatientReason(visit.id)],
       })
     }
     return visit.siteId

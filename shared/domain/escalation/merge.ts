@@ -14,8 +14,8 @@ export function mergeReasons(existing: readonly EscalationReason[], added: reado
   const byRule = new Map<string, EscalationReason>()
   for (const reason of [...existing, ...added]) {
     const known = byRule.get(reason.ruleId)
-    // A later firing of the same rule brings the newer findings, never a lower urgency.
-    byRule.set(reason.ruleId, known ? { ...reason, urgency: moreUrgent(known.urgency, reason.urgency) } : reason)
+    // A milder firing does not take back what was said before; an equal or worse one brings the newer findings.
+    if (!known || moreUrgent(reason.urgency, known.urgency) === reason.urgency) byRule.set(reason.ruleId, reason)
   }
   const reasons = [...byRule.values()].sort((left, right) => urgencies.indexOf(left.urgency) - urgencies.indexOf(right.urgency))
   return { reasons, urgency: reasons.map(reason => reason.urgency).reduce(moreUrgent, 'this-week') }

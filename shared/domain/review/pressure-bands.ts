@@ -68,6 +68,9 @@ export const pressureLimits = {
   steroidRiseShare: 0.25,
 } as const
 
+/** The same limits with values of a site, which may be tighter. */
+export type PressureLimits = { readonly [Name in keyof typeof pressureLimits]: number }
+
 /** `5 mmHg or less`, `30 to 34 mmHg`, `40 mmHg or more`. */
 export function bandRange(band: PressureBand): string {
   if (band.fromMmHg === pressureLimits.leastMmHg) return `${band.toMmHg} mmHg or less`

@@ -2,7 +2,7 @@ import { DomainError } from '#shared/domain/errors'
 import { urgencies } from '#shared/domain/pathway/vocabulary'
 import type { Urgency } from '#shared/domain/pathway/vocabulary'
 import { bandRange, pressureBands, pressureLimits, riskReasonLabels } from '#shared/domain/review/pressure-bands'
-import type { PressureAction, PressureBand } from '#shared/domain/review/pressure-bands'
+import type { PressureAction, PressureBand, PressureLimits } from '#shared/domain/review/pressure-bands'
 import type { ChamberDepth, OedemaGrade, RiskReason, SeidelResult } from '#shared/domain/review/vocabulary'
 
 /** What the pressure table looks at. Absent means not recorded, never normal. */
@@ -84,10 +84,10 @@ function bandSentence(band: PressureBand, facts: PressureFacts): string {
   return `${bandRange(band)}${why ? `, eye at risk (${why})` : ''}.`
 }
 
-function rowReason(facts: PressureFacts, bands: readonly PressureBand[]): { band: PressureBand, action?: PressureAction, reason?: PressureReason } {
+function rowReason(facts: PressureFacts, bands: readonly PressureBand[], limits: PressureLimits): { band: PressureBand, action?: PressureAction, reason?: PressureReason } {
   const row = pressureBandIndex(facts.iopMmHg, bands)
   const riseMmHg = facts.preoperativeIopMmHg === undefined ? 0 : facts.iopMmHg - facts.preoperativeIopMmHg
-  const counted = riseMmHg >= pressureLimits.riseCountsMmHg && row + 1 < bands.length
+  const counted = riseMmHg >= limits.riseCountsMmHg && row + 1 < bands.length
   const band = bands[counted ? row + 1 : row]!
   const action = actionOf(band, facts)
   if (!action) return { band }
@@ -98,22 +98,22 @@ function rowReason(facts: PressureFacts, bands: readonly PressureBand[]): { band
   return { band, action, reason: { id, urgency: action.urgency, sentence, source: band.source } }
 }
 
-function symptomReason(facts: PressureFacts): PressureReason | undefined {
-  if (facts.iopMmHg < pressureLimits.withSymptomsFromMmHg) return undefined
+function symptomReason(facts: PressureFacts, limits: PressureLimits): PressureReason | undefined {
+  if (facts.iopMmHg < limits.withSymptomsFromMmHg) return undefined
   const signs = [
-    (facts.painScore ?? 0) >= pressureLimits.painFrom && `pain ${facts.painScore} of 10`,
+    (facts.painScore ?? 0) >= limits.painFrom && `pain ${facts.painScore} of 10`,
     facts.vomiting && 'vomiting',
-    (facts.oedemaGrade ?? 0) >= pressureLimits.oedemaFrom && `corneal oedema ${facts.oedemaGrade}`,
+    (facts.oedemaGrade ?? 0) >= limits.oedemaFrom && `corneal oedema ${facts.oedemaGrade}`,
   ].filter(sign => typeof sign === 'string')
   if (signs.length === 0) return undefined
-  return { id: 'pressure.symptoms', urgency: 'now', sentence: `${pressureLimits.withSymptomsFromMmHg} mmHg or more with ${signs.join(', ')}.`, source: 'proposed' }
+  return { id: 'pressure.symptoms', urgency: 'now', sentence: `${limits.withSymptomsFromMmHg} mmHg or more with ${signs.join(', ')}.`, source: 'proposed' }
 }
 
-function steroidReason(facts: PressureFacts): PressureReason | undefined {
+function steroidReason(facts: PressureFacts, limits: PressureLimits): PressureReason | undefined {
   const { preoperativeIopMmHg: before, daysAfterSurgery: day } = facts
   if (!facts.onSteroidDrops || before === undefined || day === undefined) return undefined
-  const risen = facts.iopMmHg > before * (1 + pressureLimits.steroidRiseShare) + 1e-9
-  if (day < pressureLimits.steroidFromDay || facts.iopMmHg < pressureLimits.steroidFromMmHg || !risen) return undefined
+  const risen = facts.iopMmHg > before * (1 + limits.steroidRiseShare) + 1e-9
+  if (day < limits.steroidFromDay || facts.iopMmHg < limits.steroidFromMmHg || !risen) return undefined
   return { id: 'pressure.steroid-response', urgency: 'today', sentence: `Day ${day} on steroid drops, ${facts.iopMmHg} mmHg, more than 25 % above ${before} mmHg before surgery: steroid response.`, source: 'Chang, Tan, Tripodis 2011' }
 }
 
@@ -121,9 +121,9 @@ function steroidReason(facts: PressureFacts): PressureReason | undefined {
  * What a pressure raises, and why; undefined when it raises nothing. Adding a worse fact never lowers the urgency.
  * @throws DomainError `review.pressure-out-of-range`
  */
-export function pressureConcern(facts: PressureFacts, bands: readonly PressureBand[] = pressureBands): PressureConcern | undefined {
-  const row = rowReason(facts, bands)
-  const reasons = [row.reason, symptomReason(facts), steroidReason(facts)].filter(reason => reason !== undefined)
+export function pressureConcern(facts: PressureFacts, bands: readonly PressureBand[] = pressureBands, limits: PressureLimits = pressureLimits): PressureConcern | undefined {
+  const row = rowReason(facts, bands, limits)
+  const reasons = [row.reason, symptomReason(facts, limits), steroidReason(facts, limits)].filter(reason => reason !== undefined)
   if (reasons.length === 0) return undefined
   const urgency = reasons.map(reason => reason.urgency).reduce(worseOf)
   const recheckWithinHours = row.action?.recheckWithinHours
