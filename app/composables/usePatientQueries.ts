@@ -1,6 +1,7 @@
 import { useQuery } from '@tanstack/vue-query'
 import type { MaybeRefOrGetter } from 'vue'
-import type { PathwayList, PatientPage } from '#server/presenters/patient'
+import type { PathwayList } from '#server/presenters/pathway'
+import type { PatientPage } from '#server/presenters/patient'
 import type { Stage } from '#shared/domain/pathway/vocabulary'
 
 export function usePatient(id: MaybeRefOrGetter<string>) {

@@ -12,7 +12,7 @@ import type { Occasion } from '#shared/domain/messaging/reminder-plan'
 import { renderTemplate } from '#shared/domain/messaging/templates'
 import type { TemplateValues } from '#shared/domain/messaging/templates'
 import { languages } from '#shared/domain/messaging/vocabulary'
-import type { ContactPreferences, Language } from '#shared/domain/messaging/vocabulary'
+import type { ContactPreferences, Language, StoredKind } from '#shared/domain/messaging/vocabulary'
 
 dayjs.extend(utc)
 dayjs.extend(timezone)
@@ -27,7 +27,7 @@ type NewMessage = typeof messages.$inferInsert
 const linkDays = 60
 
 /** The address that links in messages lead to. */
-function origin(): string {
+export function origin(): string {
   return process.env.DAWNWARD_ORIGIN ?? 'http://127.0.0.1:3000'
 }
 
@@ -129,12 +129,12 @@ export async function queueLetter(tx: Transaction, { pathway, site, toEmail, lin
   }), now)
 }
 
-export interface WithdrawInput { visitId?: string, pathwayId?: string, escalationId?: string, why: string, now: Date }
+export interface WithdrawInput { visitId?: string, pathwayId?: string, escalationId?: string, patientId?: string, kinds?: StoredKind[], why: string, now: Date }
 
 /** Takes back what has not been sent. What is on its way or sent stays in the history. */
 export async function withdrawMessages(tx: Transaction, input: WithdrawInput): Promise<void> {
-  const which = [input.visitId && eq(messages.visitId, input.visitId), input.pathwayId && eq(messages.pathwayId, input.pathwayId), input.escalationId && eq(messages.escalationId, input.escalationId)].filter(each => typeof each === 'object')
+  const which = [input.visitId && eq(messages.visitId, input.visitId), input.pathwayId && eq(messages.pathwayId, input.pathwayId), input.escalationId && eq(messages.escalationId, input.escalationId), input.patientId && eq(messages.patientId, input.patientId)].filter(each => typeof each === 'object')
   if (!which.length) return
-  const withdrawn = await tx.update(messages).set({ state: 'withdrawn' }).where(and(...which, inArray(messages.state, ['queued', 'held']))).returning({ id: messages.id })
+  const withdrawn = await tx.update(messages).set({ state: 'withdrawn' }).where(and(...which, input.kinds ? inArray(messages.kind, input.kinds) : undefined, inArray(messages.state, ['queued', 'held']))).returning({ id: messages.id })
   if (withdrawn.length) await tx.insert(messageEvents).values(withdrawn.map(row => ({ messageId: row.id, at: input.now, kind: 'withdrawn', detail: { why: input.why } })))
 }

@@ -1,0 +1,7 @@
+import { presentStanding } from '#server/presenters/pathway'
+import { changePathway } from '#server/services/pathway/change-pathway'
+import { defineStaffApi, idParams } from '#server/utils/api'
+import { pathwayRowVersionBody } from '#shared/contracts/pathway'
+
+export default defineStaffApi({ params: idParams, body: pathwayRowVersionBody }, async ({ ctx, params, body }) =>
+  presentStanding(await changePathway(ctx, { pathwayId: params.id, rowVersion: body.rowVersion, action: { kind: 'advance' } })))
