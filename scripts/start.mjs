@@ -65,11 +65,11 @@ if (demo && !run('npx', ['tsx', 'scripts/seed.ts'], { stdio: ['ignore', 'ignore'
 if (demo) {
   const [text, mail, control] = [await freePort(), await freePort(), await freePort()]
   Object.assign(env, { DAWNWARD_FAKE_TEXT_PORT: text, DAWNWARD_FAKE_MAIL_PORT: mail, DAWNWARD_FAKE_CONTROL_PORT: control, DAWNWARD_TEXT_HOST: `http://127.0.0.1:${text}`, DAWNWARD_MAIL_URL: `smtp://127.0.0.1:${mail}`, DAWNWARD_FAKES_URL: `http://127.0.0.1:${control}` })
-  launch('npx', ['tsx', 'mocks/main.ts'], { stdio: ['ignore', 'ignore', 'inherit'] })
+  launch(process.execPath, ['--import', 'tsx', 'mocks/main.ts'], { stdio: ['ignore', 'ignore', 'inherit'] })
 }
 if (!isDev) ensureBuild()
 Object.assign(env, { HOST: '127.0.0.1', NITRO_HOST: '127.0.0.1', PORT: String(port), NITRO_PORT: String(port) })
-launch(...(isDev ? ['npx', ['nuxt', 'dev', '--port', String(port), '--host', '127.0.0.1']] : [process.execPath, ['.output/server/index.mjs']]), { stdio: ['ignore', isDev ? 'inherit' : 'ignore', 'inherit'] })
+launch(...(isDev ? [process.execPath, ['node_modules/nuxt/bin/nuxt.mjs', 'dev', '--port', String(port), '--host', '127.0.0.1']] : [process.execPath, ['.output/server/index.mjs']]), { stdio: ['ignore', isDev ? 'inherit' : 'ignore', 'inherit'] })
 await answers(`http://127.0.0.1:${port}/health/ready`)
 console.log(`\nDawnward is at http://127.0.0.1:${port}`)
 if (demo) {
@@ -79,6 +79,7 @@ if (demo) {
 }
 console.log('Stop with Ctrl-C.')
 
+// Programs themselves, never a wrapper such as npx: a wrapper that is told to end leaves its child behind.
 function launch(command, args, options) {
   const child = start(command, args, options)
   children.push(child)
