@@ -3,6 +3,7 @@ import { boolean, check, doublePrecision, index, integer, jsonb, pgTable, text, 
 import { id, instant, rowVersion } from '#server/db/schema/columns'
 import { pathways } from '#server/db/schema/patient'
 import { people, sites } from '#server/db/schema/people'
+import type { CaseConstraints } from '#shared/domain/theatre/list-constraints'
 
 export const riskAssessments = pgTable('risk_assessments', {
   id: id(),
@@ -36,8 +37,14 @@ export const theatreLists = pgTable('theatre_lists', {
   startsAt: instant('starts_at').notNull(),
   endsAt: instant('ends_at').notNull(),
   lockedAt: instant('locked_at'),
+  lockedBy: uuid('locked_by').references(() => people.id),
+  /** When an anaesthetist is in this room; both null when there is none that day. */
+  anaesthetistFrom: instant('anaesthetist_from'),
+  anaesthetistTo: instant('anaesthetist_to'),
   rowVersion: rowVersion(),
 }, table => [
+  check('theatre_lists_locked', sql`(${table.lockedAt} is null) = (${table.lockedBy} is null)`),
+  check('theatre_lists_anaesthetist', sql`(${table.anaesthetistFrom} is null) = (${table.anaesthetistTo} is null) and (${table.anaesthetistFrom} is null or ${table.anaesthetistTo} > ${table.anaesthetistFrom})`),
   check('theatre_lists_span', sql`${table.endsAt} > ${table.startsAt}`),
   index('theatre_lists_day').on(table.siteId, table.startsAt),
 ])
@@ -48,10 +55,17 @@ export const theatreCases = pgTable('theatre_cases', {
   pathwayId: uuid('pathway_id').notNull().references(() => pathways.id),
   position: integer('position').notNull(),
   plannedMinutes: integer('planned_minutes').notNull(),
+  /** Minutes that a person set; a prediction is not put in their place. */
+  minutesByHand: boolean('minutes_by_hand').notNull().default(false),
+  constraints: jsonb('constraints').$type<CaseConstraints>().notNull().default({}),
+  /** From the first signed step of the safety check to its last: what the surgeon's durations are learnt from. */
+  startedAt: instant('started_at'),
+  endedAt: instant('ended_at'),
   state: text('state', { enum: ['planned', 'in-theatre', 'done', 'cancelled'] }).notNull().default('planned'),
   cancelReason: text('cancel_reason'),
 }, table => [
   check('theatre_cases_state', sql`${table.state} in ('planned', 'in-theatre', 'done', 'cancelled')`),
+  check('theatre_cases_span', sql`${table.endedAt} is null or (${table.startedAt} is not null and ${table.endedAt} >= ${table.startedAt})`),
   check('theatre_cases_cancelled', sql`(${table.state} = 'cancelled') = (${table.cancelReason} is not null)`),
   uniqueIndex('theatre_cases_live').on(table.pathwayId).where(sql`state in ('planned', 'in-theatre')`),
   index('theatre_cases_list').on(table.listId, table.position),
