@@ -9,6 +9,7 @@ import { queuePatientMessages, withdrawMessages } from '#server/services/messagi
 import { lockPathway, requireOpen } from '#server/services/pathway/load-pathway'
 import type { LoadedPathway } from '#server/services/pathway/load-pathway'
 import { recordEvent } from '#server/services/pathway/record-event'
+import { finishCase, requireNoOpenStop } from '#server/services/theatre/finish-case'
 import { needDayOne } from '#server/services/theatre/need-day-one'
 import type { AmendNoteBody, SignNoteBody } from '#shared/contracts/theatre'
 import { DomainError } from '#shared/domain/errors'
@@ -54,6 +55,7 @@ async function write(tx: Transaction, ctx: ServiceContext, loaded: LoadedPathway
     tx.select().from(theatreCases).where(and(eq(theatreCases.pathwayId, pathway.id), inArray(theatreCases.state, ['planned', 'in-theatre']))).limit(1),
   ])
   requireTurn(loaded, last, live, amendment)
+  if (live) await requireNoOpenStop(tx, live.id)
   const lensAsPlanned = plan !== undefined && plan.powerD === input.lensPowerD && sameModel(plan.model, input.lensModel)
   if (!lensAsPlanned && input.lensDeviationExplained.length < 3) {
     throw new DomainError('theatre.explanation-needed', 'The lens implanted is not the lens planned: say why.', { fields: [{ field: 'lensDeviationExplained', code: 'required', message: 'Say why another lens was implanted.' }], detail: { planned: plan ? { model: plan.model, powerD: plan.powerD } : null } })
@@ -64,7 +66,7 @@ async function write(tx: Transaction, ctx: ServiceContext, loaded: LoadedPathway
   const version = (last?.version ?? 0) + 1
   const [note] = await tx.insert(operationNotes).values({ ...stored, pathwayId: pathway.id, caseId: last?.caseId ?? live?.id ?? null, version, operatedAt, lensAsPlanned, lensDeviationExplained: lensDeviationExplained || null, signedBy: ctx.actor.personId, signedAt: ctx.now, amendReason: amendment?.reason ?? null }).returning()
   if (!note) throw new DomainError('theatre.conflict', 'The note could not be signed.')
-  if (live) await tx.update(theatreCases).set({ state: 'done' }).where(eq(theatreCases.id, live.id))
+  if (live) await finishCase(tx, live, operatedAt)
   const changed = await recordEvent(tx, ctx, loaded, {
     kind: amendment ? 'note-amended' : 'note-signed', words: amendment ? `Operation note amended: ${amendment.reason}` : 'Operation note signed', audit: amendment ? 'theatre.note-amended' : 'theatre.note-signed',
     payload: { version }, detail: { noteId: note.id, dayOne }, change: { operatedAt, surgeryAt: operatedAt, dayOneNeed: need },
