@@ -7,6 +7,7 @@ const everyLink: { label: string, to: string, key: string, roles: readonly RoleN
   { label: 'Today', to: '/', key: 't', roles: ['coordinator', 'nurse', 'optometrist', 'surgeon', 'clinical-lead', 'administrator'] },
   { label: 'Pathways', to: '/pathways', key: 'p', roles: ['coordinator', 'nurse', 'optometrist', 'surgeon', 'clinical-lead'] },
   { label: 'Clinics', to: '/clinic', key: 'c', roles: ['coordinator', 'nurse', 'optometrist', 'surgeon', 'clinical-lead'] },
+  { label: 'Theatre', to: '/theatre', key: 'h', roles: ['coordinator', 'nurse', 'surgeon', 'clinical-lead'] },
   { label: 'Escalations', to: '/escalations', key: 'e', roles: ['nurse', 'optometrist', 'surgeon', 'clinical-lead'] },
   { label: 'Messages', to: '/messages', key: 'm', roles: ['coordinator', 'nurse', 'clinical-lead'] },
 ]

@@ -1,7 +1,9 @@
 import type { consents, operationNotes, riskAssessments, theatreCases, theatreLists } from '#server/db/schema/index'
 import { may } from '#server/policies/pathway'
-import type { getTheatreDay } from '#server/services/theatre/get-theatre-day'
+import { mayLockList, mayPrintList, maySignSafety } from '#server/policies/theatre'
+import type { getTheatreDay, LoadedList } from '#server/services/theatre/get-theatre-day'
 import type { Actor } from '#shared/domain/people/vocabulary'
+import { forecastDay } from '#shared/domain/theatre/day-plan'
 import type { RiskAssessment } from '#shared/domain/theatre/vocabulary'
 
 /** A risk that was worked out here has a probability; one entered with older records has none. */
@@ -36,23 +38,46 @@ export function presentCase(row: typeof theatreCases.$inferSelect) {
   return { id: row.id, listId: row.listId, pathwayId: row.pathwayId, position: row.position, plannedMinutes: row.plannedMinutes, state: row.state }
 }
 
+/** One case of a list, as the page draws it and the printed list reads it. */
+function presentDayCase({ theatreCase, pathway, patient, risk, plan, duration, predicted }: LoadedList['cases'][number]) {
+  return {
+    ...presentCase(theatreCase), eye: pathway.eye, stage: pathway.stage, surgeryAt: pathway.surgeryAt?.toISOString() ?? null,
+    startedAt: theatreCase.startedAt?.toISOString() ?? null, endedAt: theatreCase.endedAt?.toISOString() ?? null, minutesByHand: theatreCase.minutesByHand, constraints: theatreCase.constraints,
+    duration: { logMedian: duration.logMedian, logSpread: duration.logSpread }, predictedMinutes: Math.round(predicted.medianMinutes), ownCases: predicted.ownCases,
+    patient: { id: patient.id, name: patient.name, birthDate: patient.birthDate, recordNumber: patient.recordNumber, alerts: patient.alerts.map(alert => alert.words), interpreterLanguage: patient.interpreterLanguage },
+    lens: plan ? { model: plan.model, powerD: plan.powerD, signedAt: plan.signedAt.toISOString() } : null,
+    difficulty: typeof risk?.result.difficulty === 'string' ? risk.result.difficulty : null,
+    hazards: ((risk?.result.hazards ?? []) as { label: string }[]).map(hazard => hazard.label),
+    equipment: (risk?.result.equipment ?? []) as string[],
+  }
+}
+
+export function presentDayList({ list, surgeonName, lockedByName, ownCases, changes, cases }: LoadedList, actor: Actor, now: Date) {
+  const canRun = may(actor, 'runTheatre', list.siteId)
+  const isOver = list.endsAt <= now
+  const view = {
+    ...presentList(list), surgeonName, isOver, rowVersion: list.rowVersion, ownCases,
+    lockedAt: list.lockedAt?.toISOString() ?? null, lockedByName, anaesthetistFrom: list.anaesthetistFrom?.toISOString() ?? null, anaesthetistTo: list.anaesthetistTo?.toISOString() ?? null,
+    changesSinceLock: changes.map(({ change, by }) => ({ id: change.id, at: change.at.toISOString(), by, kind: change.kind, words: change.words, reason: change.reason })),
+    cases: cases.map(row => ({ ...presentDayCase(row), abilities: { canCancel: canRun && row.theatreCase.state === 'planned', canChange: canRun && row.theatreCase.state === 'planned' && !isOver, canCheck: maySignSafety(actor, list.siteId) } })),
+  }
+  const forecast = isOver ? null : forecastDay(view, now.toISOString())
+  return {
+    ...view,
+    forecast: forecast ? { expectedFinishMinute: forecast.expectedFinishMinute, slowFinishMinute: forecast.slowFinishMinute, overrunProbability: forecast.overrunProbability } : null,
+    abilities: { canOrder: canRun && !isOver, canAddCase: canRun && !isOver, canLock: mayLockList(actor, list), canPrint: mayPrintList(actor, list.siteId), canChange: canRun && !isOver },
+  }
+}
+export type DayListView = ReturnType<typeof presentDayList>
+export type DayCaseView = DayListView['cases'][number]
+
 export function presentTheatreDay(day: Awaited<ReturnType<typeof getTheatreDay>>, actor: Actor, now: Date) {
   const canRun = may(actor, 'runTheatre', day.site.id)
   return {
     now: now.toISOString(), date: day.date, site: { id: day.site.id, name: day.site.name, zone: day.site.zone },
-    lists: day.lists.map(({ list, surgeonName, cases, forecast }) => ({
-      ...presentList(list), surgeonName, isOver: list.endsAt <= now,
-      forecast: forecast ? { expectedFinishMinute: forecast.expectedFinishMinute, slowFinishMinute: forecast.slowFinishMinute, overrunProbability: forecast.overrunProbability } : null,
-      cases: cases.map(({ theatreCase, pathway, patient, risk, plan }) => ({
-        ...presentCase(theatreCase), eye: pathway.eye, stage: pathway.stage, startsAt: pathway.surgeryAt?.toISOString() ?? null,
-        patient: { id: patient.id, name: patient.name, birthDate: patient.birthDate, recordNumber: patient.recordNumber, alerts: patient.alerts.map(alert => alert.words) },
-        lens: plan ? { model: plan.model, powerD: plan.powerD } : null,
-        hazards: ((risk?.result.hazards ?? []) as { label: string }[]).map(hazard => hazard.label),
-        equipment: (risk?.result.equipment ?? []) as string[],
-        abilities: { canCancel: canRun && theatreCase.state === 'planned' },
-      })),
-    })),
-    waiting: day.waiting.map(row => ({ id: row.id, eye: row.eye, stage: row.stage, priority: row.priority, patient: { id: row.patient.id, name: row.patient.name, birthDate: row.patient.birthDate } })),
+    lists: day.lists.map(list => presentDayList(list, actor, now)),
+    waiting: day.waiting.map(row => ({ id: row.id, eye: row.eye, stage: row.stage, priority: row.priority, referredAt: row.referredAt.toISOString(), riskAssessed: row.riskAssessed, minutes: row.minutes, patient: { id: row.patient.id, name: row.patient.name, birthDate: row.patient.birthDate } })),
+    surgeons: canRun ? day.surgeons.map(({ id, name }) => ({ id, name })) : [],
     abilities: { canAddList: canRun, canAddCase: canRun },
   }
 }

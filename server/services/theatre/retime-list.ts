@@ -3,7 +3,7 @@ import type { Transaction } from '#server/db/client'
 import type { theatreLists } from '#server/db/schema/index';
 import { pathways, patients, sites, theatreCases } from '#server/db/schema/index'
 import { queuePatientMessages, withdrawMessages } from '#server/services/messaging/queue-messages'
-import { turnoverMinutes } from '#server/services/theatre/predict-minutes'
+import { turnoverMinutes } from '#shared/domain/theatre/day-plan'
 import { languages } from '#shared/domain/messaging/vocabulary'
 import { visitWords } from '#shared/domain/messaging/visit-words'
 

@@ -1,0 +1,26 @@
+import { Temporal } from 'temporal-polyfill'
+import type { Eye } from '#shared/domain/pathway/vocabulary'
+import { isOver, plannedSpans } from '#shared/domain/theatre/day-plan'
+import type { CaseState } from '#shared/domain/theatre/day-plan'
+import { findBreaches } from '#shared/domain/theatre/list-constraints'
+import type { CaseConstraints, ConstraintBreach } from '#shared/domain/theatre/list-constraints'
+
+export interface BreachCase { id: string, patientName: string, eye: Eye, constraints: CaseConstraints, plannedMinutes: number, state: CaseState, endedAt: string | null }
+export interface BreachList { startsAt: string, zone: string, anaesthetistFrom: string | null, anaesthetistTo: string | null, cases: readonly BreachCase[] }
+
+/** The constraints that a list in this order does not keep, by its planned times on the site's clock. What is over is past mending and left out. */
+export function breachesOf(list: BreachList): ConstraintBreach[] {
+  const offset = minuteOfDay(list.startsAt, list.zone)
+  const spans = plannedSpans(list.cases)
+  const hours = list.anaesthetistFrom && list.anaesthetistTo
+    ? { fromMinuteOfDay: minuteOfDay(list.anaesthetistFrom, list.zone), toMinuteOfDay: minuteOfDay(list.anaesthetistTo, list.zone) }
+    : null
+  const over = new Set(list.cases.filter(isOver).map(one => one.id))
+  return findBreaches(list.cases.map((one, index) => ({ ...one, startMinuteOfDay: offset + spans[index]!.startMinute, endMinuteOfDay: offset + spans[index]!.endMinute })), hours)
+    .filter(breach => !over.has(breach.caseId))
+}
+
+function minuteOfDay(instant: string, zone: string): number {
+  const { hour, minute } = Temporal.Instant.from(instant).toZonedDateTimeISO(zone)
+  return hour * 60 + minute
+}
