@@ -32,7 +32,7 @@ export function presentNote(row: typeof operationNotes.$inferSelect, signedByNam
 export type NoteView = ReturnType<typeof presentNote>
 
 export function presentList(row: typeof theatreLists.$inferSelect) {
-  return { id: row.id, siteId: row.siteId, surgeonId: row.surgeonId, room: row.room, startsAt: row.startsAt.toISOString(), endsAt: row.endsAt.toISOString() }
+  return { id: row.id, siteId: row.siteId, surgeonId: row.surgeonId, room: row.room, startsAt: row.startsAt.toISOString(), endsAt: row.endsAt.toISOString(), rowVersion: row.rowVersion, lockedAt: row.lockedAt?.toISOString() ?? null }
 }
 export function presentCase(row: typeof theatreCases.$inferSelect) {
   return { id: row.id, listId: row.listId, pathwayId: row.pathwayId, position: row.position, plannedMinutes: row.plannedMinutes, state: row.state }
@@ -56,8 +56,8 @@ export function presentDayList({ list, surgeonName, lockedByName, ownCases, chan
   const canRun = may(actor, 'runTheatre', list.siteId)
   const isOver = list.endsAt <= now
   const view = {
-    ...presentList(list), surgeonName, isOver, rowVersion: list.rowVersion, ownCases,
-    lockedAt: list.lockedAt?.toISOString() ?? null, lockedByName, anaesthetistFrom: list.anaesthetistFrom?.toISOString() ?? null, anaesthetistTo: list.anaesthetistTo?.toISOString() ?? null,
+    ...presentList(list), surgeonName, isOver, ownCases,
+    lockedByName, anaesthetistFrom: list.anaesthetistFrom?.toISOString() ?? null, anaesthetistTo: list.anaesthetistTo?.toISOString() ?? null,
     changesSinceLock: changes.map(({ change, by }) => ({ id: change.id, at: change.at.toISOString(), by, kind: change.kind, words: change.words, reason: change.reason })),
     cases: cases.map(row => ({ ...presentDayCase(row), abilities: { canCancel: canRun && row.theatreCase.state === 'planned', canChange: canRun && row.theatreCase.state === 'planned' && !isOver, canCheck: maySignSafety(actor, list.siteId) } })),
   }

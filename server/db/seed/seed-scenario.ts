@@ -1,6 +1,7 @@
 import type { Transaction } from '#server/db/client'
 import { biometries, clinicSessions, consents, lensPlans, operationNotes, pathwayEvents, pathways, patients, referrals, reviews, riskAssessments, sessionPlaces, theatreCases, theatreLists, visits } from '#server/db/schema/index'
 import { demoNames } from '#server/db/seed/demo-names'
+import { seedTheatre } from '#server/db/seed/seed-theatre'
 import { seedId } from '#server/db/seed/seed-id'
 import type { Stage } from '#shared/domain/pathway/vocabulary'
 import { stages } from '#shared/domain/pathway/vocabulary'
@@ -23,6 +24,7 @@ export async function seedScenario(tx: Transaction, times: ScenarioTimes): Promi
   await tx.insert(theatreLists).values({ id: list, siteId: ferncombe, surgeonId: surgeon, room: 'Theatre 1', startsAt: at(-1, 8, 30), endsAt: at(-1, 17) })
   await tx.insert(theatreLists).values({ id: seedId('list:today'), siteId: ferncombe, surgeonId: surgeon, room: 'Theatre 1', startsAt: at(0, 8, 30), endsAt: at(0, 17) })
   for (const [index, name] of demoNames.entries()) await seedPerson(tx, times, at, list, index, name)
+  await seedTheatre(tx, times)
 }
 
 async function seedSessions(tx: Transaction, times: ScenarioTimes): Promise<void> {
