@@ -2,38 +2,30 @@ import { randomUUID } from 'node:crypto'
 import { drizzle } from 'drizzle-orm/node-postgres'
 import pg from 'pg'
 import type { Database } from '#server/db/client'
-import { migrateDatabase } from '#server/db/migrate'
 import * as schema from '#server/db/schema/index'
+import { createTestDatabase } from '#tests/support/product'
 
-/** An empty database of its own at the newest schema. */
+/** A database of its own at the newest schema, without the demo's people, as the application's role sees it. */
 export async function openMessagingDatabase() {
-  const owner = new URL(process.env.DAWNWARD_TEST_OWNER_URL ?? '')
-  const name = `messaging_${randomUUID().replaceAll('-', '')}`
-  const admin = new URL(owner)
-  admin.pathname = '/postgres'
-  await once(admin.href, `create database ${name}`)
-  owner.pathname = `/${name}`
-  await migrateDatabase(owner.href)
+  const made = await createTestDatabase()
+  // Append-only tables refuse to be emptied; as a replica the owner is not asked.
+  const { rows } = await made.pool.query<{ name: string }>('select tablename as name from pg_tables where schemaname = \'public\' and tablename <> \'demo_clock\'')
+  const client = await made.pool.connect()
+  await client.query(`set session_replication_role = replica; truncate ${rows.map(row => `"${row.name}"`).join(', ')} cascade; set session_replication_role = origin`).finally(() => client.release())
   const pools: pg.Pool[] = []
   const connect = (): Database => {
-    const pool = new pg.Pool({ connectionString: owner.href, max: 8 })
+    const pool = new pg.Pool({ connectionString: made.appUrl, max: 8 })
     pool.on('error', () => undefined)
     pools.push(pool)
     return drizzle(pool, { schema })
   }
   return {
-    url: owner.href, db: connect(), connect,
+    url: made.appUrl, db: connect(), connect,
     close: async () => {
       await Promise.all(pools.map(pool => pool.end()))
-      await once(admin.href, `drop database ${name} with (force)`)
+      await made.drop()
     },
   }
-}
-
-async function once(url: string, statement: string): Promise<void> {
-  const client = new pg.Client({ connectionString: url })
-  await client.connect()
-  await client.query(statement).finally(() => client.end())
 }
 
 export const ids = { site: randomUUID(), patient: randomUUID(), pathway: randomUUID(), visit: randomUUID(), person: randomUUID() }

@@ -29,6 +29,8 @@ export const messages = pgTable('messages', {
   subject: text('subject').notNull().default(''),
   body: text('body').notNull(),
   language: text('language').notNull().default('en'),
+  /** Two messages to one person with the same topic say the same; none for words written by hand. */
+  topic: text('topic').notNull().default(''),
   calendar: text('calendar'),
   state: text('state', { enum: messageStates }).notNull().default('queued'),
   dueAt: instant('due_at').notNull(),
@@ -52,6 +54,9 @@ export const messages = pgTable('messages', {
   unique('messages_once').on(table.recipientKey, table.kind, table.subjectKey, table.occasion, table.channel),
   index('messages_due').on(table.dueAt).where(sql`state in ('queued', 'sending')`),
   index('messages_patient').on(table.patientId, table.createdAt),
+  index('messages_same_words').on(table.recipientKey, table.topic).where(sql`topic <> ''`),
+  index('messages_checks_sent').on(table.kind, table.dueAt).where(sql`kind = 'safety.day3'`),
+  index('messages_alerts').on(table.personId, table.dueAt).where(sql`person_id is not null`),
   index('messages_visit').on(table.visitId),
 ])
 
@@ -70,6 +75,9 @@ export const inboundTexts = pgTable('inbound_texts', {
   fromNumber: text('from_number').notNull(),
   patientId: uuid('patient_id').references(() => patients.id),
   visitId: uuid('visit_id').references(() => visits.id),
+  /** A member of staff who answered an alert. */
+  personId: uuid('person_id').references(() => people.id),
+  /** Null when nobody knows whose number it is: every unit's list shows it. */
   siteId: uuid('site_id').references(() => sites.id),
   body: text('body').notNull(),
   meaning: text('meaning').notNull(),
@@ -100,6 +108,8 @@ export const symptomChecks = pgTable('symptom_checks', {
   answers: jsonb('answers').$type<Record<string, boolean>>().notNull(),
   urgency: text('urgency', { enum: urgencies }),
   onNurseList: text('on_nurse_list'),
+  /** What they added in their own words. */
+  words: text('words').notNull().default(''),
   at: instant('at').notNull(),
 }, table => [
   foreignKey({ name: 'symptom_checks_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }),
