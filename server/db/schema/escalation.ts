@@ -34,7 +34,7 @@ export const escalations = pgTable('escalations', {
   closingWords: text('closing_words'),
   rowVersion: rowVersion(),
 }, table => [
-  foreignKey({ name: 'escalations_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }),
+  foreignKey({ name: 'escalations_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }).onUpdate('cascade'),
   check('escalations_urgency', oneOf(table.urgency, urgencies)),
   check('escalations_state', oneOf(table.state, escalationStates)),
   check('escalations_acknowledged', sql`${table.state} <> 'acknowledged' or (${table.acknowledgedBy} is not null and ${table.acknowledgedAt} is not null)`),

@@ -1,5 +1,6 @@
 export * from '#server/db/schema/people'
 export * from '#server/db/schema/patient'
+export * from '#server/db/schema/referral'
 export * from '#server/db/schema/biometry'
 export * from '#server/db/schema/theatre'
 export * from '#server/db/schema/theatre-day'

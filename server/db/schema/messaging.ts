@@ -46,7 +46,7 @@ export const messages = pgTable('messages', {
   deliveredAt: instant('delivered_at'),
   createdAt: instant('created_at').notNull(),
 }, table => [
-  foreignKey({ name: 'messages_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }),
+  foreignKey({ name: 'messages_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }).onUpdate('cascade'),
   check('messages_kind', oneOf(table.kind, storedKinds)),
   check('messages_state', oneOf(table.state, messageStates)),
   check('messages_channel', oneOf(table.channel, messageChannels)),
@@ -112,5 +112,5 @@ export const symptomChecks = pgTable('symptom_checks', {
   words: text('words').notNull().default(''),
   at: instant('at').notNull(),
 }, table => [
-  foreignKey({ name: 'symptom_checks_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }),
+  foreignKey({ name: 'symptom_checks_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }).onUpdate('cascade'),
 ])

@@ -1,4 +1,5 @@
 import { sql } from 'drizzle-orm'
+import type { AnyPgColumn } from 'drizzle-orm/pg-core'
 import { boolean, check, date, index, integer, jsonb, pgTable, text, unique, uniqueIndex, uuid } from 'drizzle-orm/pg-core'
 import { id, instant, oneOf, rowVersion } from '#server/db/schema/columns'
 import { people, practices, sites } from '#server/db/schema/people'
@@ -29,6 +30,8 @@ export const patients = pgTable('patients', {
   numberConfirmedAt: instant('number_confirmed_at'),
   textsStoppedAt: instant('texts_stopped_at'),
   diedOn: date('died_on', { mode: 'string' }),
+  /** This record was found to be the same person as that one. It keeps its number, and nothing else is filed under it. */
+  mergedIntoId: uuid('merged_into_id').references((): AnyPgColumn => patients.id),
   siteId: uuid('site_id').notNull().references(() => sites.id),
   createdAt: instant('created_at').notNull(),
   rowVersion: rowVersion(),
@@ -38,6 +41,7 @@ export const patients = pgTable('patients', {
   index('patients_name_search').on(sql`lower(${table.name}) text_pattern_ops`),
   index('patients_same').on(table.birthDate),
   index('patients_phone').on(table.phone),
+  index('patients_name_birth').on(sql`lower(${table.name})`, table.birthDate),
 ])
 
 export const pathways = pgTable('pathways', {
@@ -78,6 +82,7 @@ export const pathways = pgTable('pathways', {
   unique('pathways_of_patient').on(table.id, table.patientId),
   uniqueIndex('pathways_one_open_per_eye').on(table.patientId, table.eye).where(sql`state <> 'closed' and stage <> 'discharge'`),
   index('pathways_list').on(table.siteId, table.stage, table.surgeryAt, table.id),
+  index('pathways_waiting').on(table.referredAt, table.id).where(sql`stage = 'referral' and state <> 'closed'`),
   index('pathways_practice').on(table.practiceId),
   index('pathways_surgeon').on(table.surgeonId),
 ])
@@ -125,4 +130,4 @@ export const attachments = pgTable('attachments', {
   storedAs: text('stored_as').notNull(),
   addedBy: uuid('added_by').references(() => people.id),
   addedAt: instant('added_at').notNull(),
-})
+}, table => [index('attachments_of').on(table.pathwayId, table.addedAt)])

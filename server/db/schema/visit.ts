@@ -54,7 +54,7 @@ export const visits = pgTable('visits', {
   note: text('note').notNull().default(''),
   rowVersion: rowVersion(),
 }, table => [
-  foreignKey({ name: 'visits_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }),
+  foreignKey({ name: 'visits_same_patient', columns: [table.pathwayId, table.patientId], foreignColumns: [pathways.id, pathways.patientId] }).onUpdate('cascade'),
   check('visits_kind', oneOf(table.kind, visitKinds)),
   check('visits_state', oneOf(table.state, visitStates)),
   check('visits_cancelled', sql`(${table.state} = 'cancelled') = (${table.cancelReason} is not null)`),

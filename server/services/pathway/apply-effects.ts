@@ -10,7 +10,7 @@ import type { PathwayEffect } from '#shared/domain/pathway/transitions'
 import { dayBounds } from '#shared/domain/visit/site-day'
 
 /** A letter to the referrer is no message to the patient: it leaves even when the pathway has ended. */
-const toThePatient = storedKinds.filter(kind => kind !== 'letter.sent')
+const toThePatient = storedKinds.filter(kind => kind !== 'letter.sent' && kind !== 'referral.question')
 
 interface EffectInput { loaded: LoadedPathway, words: string }
 type Apply = (tx: Transaction, ctx: ServiceContext, input: EffectInput) => Promise<void>

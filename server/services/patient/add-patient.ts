@@ -12,9 +12,21 @@ import { telephoneFrom } from '#server/services/patient/telephone'
 import type { AddPatientBody } from '#shared/contracts/patient'
 import { DomainError } from '#shared/domain/errors'
 import { eyeLabel } from '#shared/domain/pathway/vocabulary'
+import { identifierFrom, identifierProblem } from '#shared/domain/patient/identifier'
+import { referralSettingsOf } from '#shared/domain/referral/site-settings'
+
+type NewPatient = NonNullable<AddPatientBody['patient']>
+
+/** The identifier as it is compared, refused where the site checks it and its digits do not fit. */
+function knownIdentifier(given: NewPatient, site: typeof sites.$inferSelect): NewPatient {
+  const identifier = identifierFrom(given.identifier)
+  const problem = identifierProblem(identifier, referralSettingsOf(site.settings).identifierCheck, 'patient.identifier')
+  if (problem) throw new DomainError('patient.invalid', problem.message, { fields: [problem] })
+  return { ...given, identifier }
+}
 
 /** Two people who add the same patient at once are let in one after the other, so that the second sees the first. */
-const addLock = 7_401_001
+export const addLock = 7_401_001
 
 /**
  * A new patient with one pathway for each referred eye, or new pathways for a patient who is here. People alike are shown before
@@ -26,7 +38,7 @@ export async function addPatient(ctx: ServiceContext, input: AddPatientBody) {
     const added = await ctx.db.transaction(async (tx) => {
       const [site] = await tx.select().from(sites).where(eq(sites.id, input.siteId))
       if (!site) throw new DomainError('patient.site-not-found', 'There is no such site.')
-      const patientId = input.patient ? await insertPatient(tx, ctx, input, input.patient) : await knownPatient(tx, ctx, input.patientId ?? '')
+      const patientId = input.patient ? await insertPatient(tx, ctx, input, knownIdentifier(input.patient, site)) : await knownPatient(tx, ctx, input.patientId ?? '')
       const pathwayIds: string[] = []
       for (const eye of input.eyes) pathwayIds.push(await insertPathway(tx, ctx, input, patientId, eye))
       return { patientId, pathwayIds }
@@ -40,7 +52,7 @@ export async function addPatient(ctx: ServiceContext, input: AddPatientBody) {
   }
 }
 
-async function insertPatient(tx: Transaction, ctx: ServiceContext, input: AddPatientBody, given: NonNullable<AddPatientBody['patient']>): Promise<string> {
+async function insertPatient(tx: Transaction, ctx: ServiceContext, input: AddPatientBody, given: NewPatient): Promise<string> {
   if (given.birthDate > ctx.now.toISOString().slice(0, 10)) throw new DomainError('patient.invalid', 'The birth date lies in the future.', { fields: [{ field: 'patient.birthDate', code: 'out-of-range', message: 'Enter a birth date that has passed.' }] })
   await tx.execute(sql`select pg_advisory_xact_lock(${addLock})`)
   const candidates = await unscopedFindAlike(tx, ctx.actor, given)

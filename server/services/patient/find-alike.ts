@@ -1,4 +1,4 @@
-import { and, asc, eq, or, sql } from 'drizzle-orm'
+import { and, asc, eq, isNull, or, sql } from 'drizzle-orm'
 import type { Queryable } from '#server/db/client'
 import { pathways, patients, sites } from '#server/db/schema/index'
 import { maySeePathway } from '#server/policies/scope'
@@ -22,7 +22,7 @@ export interface Alike {
 export async function unscopedFindAlike(db: Queryable, actor: Actor, given: { name: string, birthDate: string, identifier: string | null }): Promise<Alike[]> {
   const name = given.name.toLowerCase().replace(/\s+/g, ' ')
   const rows = await db.select({ patient: patients, siteName: sites.name }).from(patients).innerJoin(sites, eq(sites.id, patients.siteId))
-    .where(or(and(eq(patients.birthDate, given.birthDate), sql`lower(regexp_replace(${patients.name}, '\\s+', ' ', 'g')) = ${name}`), given.identifier ? eq(patients.identifier, given.identifier) : undefined))
+    .where(and(isNull(patients.mergedIntoId), or(and(eq(patients.birthDate, given.birthDate), sql`lower(regexp_replace(${patients.name}, '\\s+', ' ', 'g')) = ${name}`), given.identifier ? eq(patients.identifier, given.identifier) : undefined)))
     .orderBy(asc(patients.name), asc(patients.id)).limit(10)
   return Promise.all(rows.map(async ({ patient, siteName }) => {
     const own = await db.select({ siteId: pathways.siteId, practiceId: pathways.practiceId }).from(pathways).where(eq(pathways.patientId, patient.id))

@@ -41,8 +41,8 @@ export interface ContactPreferences {
 export const withdrawals = ['moved', 'cancelled', 'closed', 'arrived', 'reviewed', 'escalated', 'discharged', 'changed', 'acknowledged'] as const
 export type Withdrawal = typeof withdrawals[number]
 
-/** Kinds that leave without a plan: an account's new password, what a person answers by hand, and what became of a surgeon's answer to an alert. */
-export const unplannedKinds = ['account.reset', 'reply.hand', 'alert.answer'] as const
+/** Kinds that leave without a plan: an account's new password, what a person answers by hand, what became of a surgeon's answer to an alert, and a question to a referrer. */
+export const unplannedKinds = ['account.reset', 'reply.hand', 'alert.answer', 'referral.question'] as const
 /** Every kind that a message row may have. */
 export const storedKinds = [...messageKinds, ...unplannedKinds] as const
 export type StoredKind = typeof storedKinds[number]
