@@ -2,6 +2,7 @@ import { may } from '#server/policies/pathway'
 import { mayAnswer } from '#server/policies/escalation'
 import { mayBook } from '#server/policies/visit'
 import { presentBiometry, presentLensPlan } from '#server/presenters/biometry'
+import { presentContacts } from '#server/presenters/patient'
 import { presentReferral } from '#server/presenters/referral'
 import { presentConsent, presentNote, presentRisk } from '#server/presenters/theatre'
 import type { LoadedPathwayPage } from '#server/services/pathway/get-pathway'
@@ -76,6 +77,7 @@ function abilitiesOf({ pathway, records, missing, goesTo }: LoadedPathwayPage, a
     canDecideFellowEye: open && can('decideFellowEye'),
     canSendLetter: open && (pathway.stage === 'follow-up' || pathway.stage === 'discharge') && can('sendLetter'),
     canBook: open && pathway.operatedAt !== null && mayBook(actor, pathway.siteId),
+    canChangeContacts: can('changeContacts'),
   }
 }
 
@@ -86,7 +88,8 @@ export function presentPathway(page: LoadedPathwayPage, actor: Actor, now: Date)
     ...presentStanding(pathway),
     eye: pathway.eye, priority: pathway.priority,
     referredAt: pathway.referredAt.toISOString(), biometryAt: iso(pathway.biometryAt), surgeryAt: iso(pathway.surgeryAt), operatedAt: iso(pathway.operatedAt), dayOneAt: iso(pathway.dayOneAt), followUpAt: iso(pathway.followUpAt), dischargedAt: iso(pathway.dischargedAt), stageSince: pathway.stageSince.toISOString(),
-    patient: { id: patient.id, name: patient.name, birthDate: patient.birthDate, recordNumber: patient.recordNumber, alerts: patient.alerts.map(({ kind, words }) => ({ kind, words })), messageConsent: patient.messageConsent },
+    patient: { id: patient.id, name: patient.name, birthDate: patient.birthDate, recordNumber: patient.recordNumber, alerts: patient.alerts.map(({ kind, words }) => ({ kind, words })), messageConsent: patient.messageConsent, riskReasons: patient.riskReasons },
+    contacts: presentContacts(patient),
     site: { id: site.id, name: site.name, zone: site.zone },
     surgeonName: page.surgeon?.name ?? null,
     practice: page.practice ? { id: page.practice.id, name: page.practice.name } : null,

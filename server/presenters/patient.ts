@@ -13,6 +13,8 @@ export function presentContacts(patient: Loaded['patient']) {
   }
 }
 
+export type PatientContacts = ReturnType<typeof presentContacts>
+
 export function presentPatient(page: Loaded, actor: Actor, now: Date) {
   const { patient, eyes } = page
   return {

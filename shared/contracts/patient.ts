@@ -31,6 +31,7 @@ const contacts = {
 }
 export const contactsBody = z.strictObject({ ...contacts, numberConfirmed: z.boolean().default(false), rowVersion: z.int().positive() })
 export type ContactsBody = z.output<typeof contactsBody>
+export type ContactsInput = z.input<typeof contactsBody>
 
 export const redFlagsSchema = z.partialRecord(z.enum(redFlagIds), z.boolean())
 const alert = z.strictObject({ kind: z.enum(['allergy', 'communication', 'safety', 'clinical']), words: text(200).min(2) })
