@@ -98,6 +98,7 @@ export function presentPathway(page: LoadedPathwayPage, actor: Actor, now: Date)
     referral: records.referral ? presentReferral(records.referral) : null,
     biometry: records.biometry ? presentBiometry(records.biometry) : null,
     fellow: fellow ? { pathwayId: fellow.id, eye: fellow.eye, stage: fellow.stage, state: fellow.state, biometry: fellow.biometry ? presentBiometry(fellow.biometry) : null } : null,
+    fellowResult: presentFellowResult(page.fellowResult),
     plans: page.plans.map(({ plan, signedByName }) => presentLensPlan(plan, signedByName)),
     risk: records.risk ? presentRisk(records.risk) : null,
     consent: records.consent ? presentConsent(records.consent) : null,
@@ -115,6 +116,14 @@ export function presentPathway(page: LoadedPathwayPage, actor: Actor, now: Date)
   }
 }
 export type PathwayPage = ReturnType<typeof presentPathway>
+
+/** What the other eye reached, as a spherical equivalent, against what was predicted for it. */
+function presentFellowResult(result: LoadedPathwayPage['fellowResult']) {
+  const sphereD = result?.findings.refractionSphereD
+  if (!result || sphereD === undefined) return null
+  const weeks = result.operatedAt ? (result.signedAt.getTime() - result.operatedAt.getTime()) / (7 * 86_400_000) : null
+  return { model: result.plan.model, predictedD: result.plan.predictedD, achievedD: sphereD + (result.findings.refractionCylinderD ?? 0) / 2, weeksAfterSurgery: weeks, signedAt: result.signedAt.toISOString() }
+}
 
 function presentNeed(need: Record<string, unknown>) {
   const reasons = Array.isArray(need.reasons) ? need.reasons as { sentence?: unknown, source?: unknown }[] : []
