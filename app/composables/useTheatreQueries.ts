@@ -1,11 +1,14 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/vue-query'
 import type { MaybeRefOrGetter } from 'vue'
+import type { SafetyCheckView } from '#server/presenters/safety-check'
 import type { DayListView, TheatreDay } from '#server/presenters/theatre'
-import type { AddListBody, ChangeCaseBody, ChangeListBody, OrderListBody } from '#shared/contracts/theatre'
+import type { SafetyAnswers, SafetyStep } from '#shared/domain/theatre/safety-check'
+import type { AddListBody, ChangeCaseBody, ChangeListBody, LensScanBody, OrderListBody } from '#shared/contracts/theatre'
 
 export const theatreKeys = {
   day: (siteId: MaybeRefOrGetter<string | undefined>, date: MaybeRefOrGetter<string | undefined>) => ['theatre', 'day', siteId, date] as const,
   list: (id: MaybeRefOrGetter<string>) => ['theatre', 'list', id] as const,
+  check: (caseId: MaybeRefOrGetter<string>) => ['theatre', 'check', caseId] as const,
 }
 
 /** One site's theatre of one day. Asked again every minute: what is under way moves the finish. */
@@ -40,4 +43,21 @@ export function useTheatreActs() {
   const order = useMutation({ mutationFn: ({ id, ...body }: OrderListBody & { id: string }) => api(`/api/theatre/list/${id}/order`, { method: 'PUT', body }), onSettled })
   const lock = useMutation({ mutationFn: ({ id, act, rowVersion }: { id: string, act: 'lock' | 'unlock', rowVersion: number }) => api(`/api/theatre/list/${id}/${act}`, { method: 'POST', body: { rowVersion } }), onSettled })
   return { addList, changeList, addCase, cancelCase, replaceCase, changeCase, order, lock }
+}
+
+/** The safety check of one case, and what is done to it. Every act answers with the whole check as it then is. */
+export function useSafetyCheck(caseId: MaybeRefOrGetter<string>) {
+  const api = useApi()
+  const client = useQueryClient()
+  const path = (part: string) => `/api/theatre/case/${toValue(caseId)}/${part}`
+  const query = useQuery({ queryKey: theatreKeys.check(caseId), queryFn: () => api<SafetyCheckView>(path('safety')), retry: false, refetchInterval: 20_000 })
+  onServerPrefetch(() => query.suspense().catch(() => undefined))
+  const onSuccess = (view: SafetyCheckView) => {
+    client.setQueryData(['theatre', 'check', toValue(caseId)], view)
+    return client.invalidateQueries({ queryKey: ['theatre', 'day'] })
+  }
+  const sign = useMutation({ mutationFn: ({ step, answers }: { step: SafetyStep, answers: SafetyAnswers }) => api<SafetyCheckView>(path(`safety/${step}`), { method: 'POST', body: { answers } }), onSuccess })
+  const scan = useMutation({ mutationFn: (body: LensScanBody) => api<SafetyCheckView>(path('lens'), { method: 'POST', body }), onSuccess })
+  const explain = useMutation({ mutationFn: (body: { stopId: string, words: string }) => api<SafetyCheckView>(path('explain'), { method: 'POST', body }), onSuccess })
+  return { query, sign, scan, explain }
 }

@@ -26,6 +26,8 @@ export const pathwayActs = {
   assessRisk: ['surgeon', 'clinical-lead'],
   signConsent: ['surgeon', 'clinical-lead'],
   signNote: ['surgeon', 'clinical-lead'],
+  checkSafety: ['nurse', 'surgeon', 'clinical-lead'],
+  explainStop: ['surgeon', 'clinical-lead'],
   runTheatre: ['coordinator', 'surgeon', 'clinical-lead'],
 } as const satisfies Record<string, readonly RoleName[]>
 export type PathwayAct = keyof typeof pathwayActs

@@ -6,16 +6,6 @@ export function mayLockList(actor: Actor, list: { siteId: string, surgeonId: str
   return hasRoleAt(actor, list.siteId, 'clinical-lead') || (actor.personId === list.surgeonId && hasRoleAt(actor, list.siteId, 'surgeon'))
 }
 
-/** Who is in theatre signs the steps of the check. */
-export function maySignSafety(actor: Actor, siteId: string): boolean {
-  return hasRoleAt(actor, siteId, 'nurse', 'surgeon', 'clinical-lead')
-}
-
-/** Only a surgeon lifts a stop. */
-export function mayExplainStop(actor: Actor, siteId: string): boolean {
-  return hasRoleAt(actor, siteId, 'surgeon', 'clinical-lead')
-}
-
 /** A printed list names patients, eyes and lenses: for the people of that theatre. */
 export function mayPrintList(actor: Actor, siteId: string): boolean {
   return hasRoleAt(actor, siteId, 'coordinator', 'nurse', 'surgeon', 'clinical-lead')

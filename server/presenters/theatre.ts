@@ -1,6 +1,6 @@
 import type { consents, operationNotes, riskAssessments, theatreCases, theatreLists } from '#server/db/schema/index'
 import { may } from '#server/policies/pathway'
-import { mayLockList, mayPrintList, maySignSafety } from '#server/policies/theatre'
+import { mayLockList, mayPrintList } from '#server/policies/theatre'
 import type { getTheatreDay, LoadedList } from '#server/services/theatre/get-theatre-day'
 import type { Actor } from '#shared/domain/people/vocabulary'
 import { forecastDay } from '#shared/domain/theatre/day-plan'
@@ -59,7 +59,7 @@ export function presentDayList({ list, surgeonName, lockedByName, ownCases, chan
     ...presentList(list), surgeonName, isOver, ownCases,
     lockedByName, anaesthetistFrom: list.anaesthetistFrom?.toISOString() ?? null, anaesthetistTo: list.anaesthetistTo?.toISOString() ?? null,
     changesSinceLock: changes.map(({ change, by }) => ({ id: change.id, at: change.at.toISOString(), by, kind: change.kind, words: change.words, reason: change.reason })),
-    cases: cases.map(row => ({ ...presentDayCase(row), abilities: { canCancel: canRun && row.theatreCase.state === 'planned', canChange: canRun && row.theatreCase.state === 'planned' && !isOver, canCheck: maySignSafety(actor, list.siteId) } })),
+    cases: cases.map(row => ({ ...presentDayCase(row), abilities: { canCancel: canRun && row.theatreCase.state === 'planned', canChange: canRun && row.theatreCase.state === 'planned' && !isOver, canCheck: may(actor, 'checkSafety', list.siteId) } })),
   }
   const forecast = isOver ? null : forecastDay(view, now.toISOString())
   return {
