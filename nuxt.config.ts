@@ -22,7 +22,11 @@ export default defineNuxtConfig({
     experimental: { openAPI: false },
     externals: {
       // Node 20 takes the `module-sync` export of these, which the build's tracer does not know and would leave behind.
-      traceInclude: ['async-function', 'generator-function', 'async-generator-function'].map(name => `node_modules/${name}/require.mjs`),
+      traceInclude: [
+        ...['async-function', 'generator-function', 'async-generator-function'].map(name => `node_modules/${name}/require.mjs`),
+        // The letters of a PDF are read from their files when one is made.
+        ...['latin', 'latin-ext'].flatMap(part => [400, 700].map(weight => `node_modules/@fontsource/nunito-sans/files/nunito-sans-${part}-${weight}-normal.woff`)),
+      ],
     },
     esbuild: { options: { target: 'node20' } },
   },

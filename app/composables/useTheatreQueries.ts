@@ -1,7 +1,7 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/vue-query'
 import type { MaybeRefOrGetter } from 'vue'
 import type { SafetyCheckView } from '#server/presenters/safety-check'
-import type { DayListView, TheatreDay } from '#server/presenters/theatre'
+import type { PrintedListView, TheatreDay } from '#server/presenters/theatre'
 import type { SafetyAnswers, SafetyStep } from '#shared/domain/theatre/safety-check'
 import type { AddListBody, ChangeCaseBody, ChangeListBody, LensScanBody, OrderListBody } from '#shared/contracts/theatre'
 
@@ -19,12 +19,10 @@ export function useTheatreDay(siteId: MaybeRefOrGetter<string | undefined>, date
   return query
 }
 
-export interface PrintedList extends DayListView { siteName: string, zone: string, printedAt: string }
-
 /** One list as it is printed. */
 export function usePrintedList(id: MaybeRefOrGetter<string>) {
   const api = useApi()
-  const query = useQuery({ queryKey: theatreKeys.list(id), queryFn: () => api<PrintedList>(`/api/theatre/list/${toValue(id)}`), retry: false })
+  const query = useQuery({ queryKey: theatreKeys.list(id), queryFn: () => api<PrintedListView>(`/api/theatre/list/${toValue(id)}`), retry: false })
   onServerPrefetch(() => query.suspense().catch(() => undefined))
   return query
 }

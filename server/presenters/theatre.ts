@@ -1,6 +1,7 @@
 import type { consents, operationNotes, riskAssessments, theatreCases, theatreLists } from '#server/db/schema/index'
 import { may } from '#server/policies/pathway'
 import { mayLockList, mayPrintList } from '#server/policies/theatre'
+import type { getList } from '#server/services/theatre/get-list'
 import type { getTheatreDay, LoadedList } from '#server/services/theatre/get-theatre-day'
 import type { Actor } from '#shared/domain/people/vocabulary'
 import { forecastDay } from '#shared/domain/theatre/day-plan'
@@ -82,3 +83,9 @@ export function presentTheatreDay(day: Awaited<ReturnType<typeof getTheatreDay>>
   }
 }
 export type TheatreDay = ReturnType<typeof presentTheatreDay>
+
+/** One list as it goes on paper. */
+export function presentPrintedList({ found, site }: Awaited<ReturnType<typeof getList>>, actor: Actor, now: Date) {
+  return { ...presentDayList(found, actor, now), siteName: site.name, zone: site.zone, printedAt: now.toISOString(), printedBy: actor.name }
+}
+export type PrintedListView = ReturnType<typeof presentPrintedList>
