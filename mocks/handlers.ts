@@ -43,6 +43,7 @@ export function textHandlers({ store, account, token, base }: Options) {
     }),
     http.get(`${address}.json`, ({ request }) => {
       if (!mayCall(request)) return refusal(401, 20003, 'Authenticate')
+      if (store.mode === 'error') return refusal(500, 20500, 'Internal server error')
       const query = new URL(request.url).searchParams
       const to = query.get('To')
       const after = query.get('DateSent>') ?? query.get('DateSent')

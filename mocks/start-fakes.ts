@@ -8,7 +8,7 @@ import { TextStore } from '#mocks/text-store'
 import type { FakeMail, FakeState } from '#mocks/types'
 
 export interface FakesOptions { textPort: number, mailPort: number, controlPort: number, origin: string, account: string, token: string }
-export interface RunningFakes { textUrl: string, mailUrl: string, controlUrl: string, store: TextStore, mails: FakeMail[], stop: () => Promise<void> }
+export interface RunningFakes { textUrl: string, mailUrl: string, controlUrl: string, store: TextStore, mails: FakeMail[], refuseMail: boolean, stop: () => Promise<void> }
 
 const mostMails = 5_000
 
@@ -33,10 +33,16 @@ export async function startFakes(options: FakesOptions): Promise<RunningFakes> {
   })
   textApp.use(createMiddleware(...textHandlers({ store, account: options.account, token: options.token, base: '*' })))
   const text = await listen(textApp, options.textPort)
-  const mail = await startMail(mails, options.mailPort)
+  const mail = await startMail(mails, options.mailPort, () => store.refuseMail)
   const control = await listen(controlApp(options, store, mails), options.controlPort)
   return {
     textUrl: `http://127.0.0.1:${text.port}`, mailUrl: `smtp://127.0.0.1:${mail.port}`, controlUrl: `http://127.0.0.1:${control.port}`, store, mails,
+    get refuseMail() {
+      return store.refuseMail
+    },
+    set refuseMail(refuse: boolean) {
+      store.refuseMail = refuse
+    },
     stop: async () => {
       await Promise.all([text.stop(), control.stop(), mail.stop()])
     },
@@ -56,9 +62,12 @@ function listen(app: express.Express, port: number): Promise<{ port: number, sto
   })
 }
 
-function startMail(mails: FakeMail[], port: number): Promise<{ port: number, stop: () => Promise<void> }> {
+function startMail(mails: FakeMail[], port: number, refuses: () => boolean): Promise<{ port: number, stop: () => Promise<void> }> {
   const server = new SMTPServer({
     authOptional: true, disabledCommands: ['STARTTLS', 'AUTH'],
+    onRcptTo(_address, _session, done) {
+      done(refuses() ? Object.assign(new Error('5.1.1 no such mailbox'), { responseCode: 550 }) : undefined)
+    },
     onData(stream, session, done) {
       const parts: Buffer[] = []
       stream.on('data', (part: Buffer) => parts.push(part))
@@ -100,14 +109,15 @@ function decodeWords(text: string): string {
 function controlApp(options: FakesOptions, store: TextStore, mails: FakeMail[]): express.Express {
   const app = express()
   app.use(express.json({ limit: '50kb' }))
-  app.get('/control/state', (_request, response) => void response.json({ mode: store.mode, slowMs: store.slowMs, failing: [...store.failing], texts: store.texts.length, mails: mails.length } satisfies FakeState))
+  app.get('/control/state', (_request, response) => void response.json({ mode: store.mode, slowMs: store.slowMs, failing: [...store.failing], texts: store.texts.length, mails: mails.length, refuseMail: store.refuseMail } satisfies FakeState))
   app.get('/control/texts', (_request, response) => void response.json({ items: store.texts.slice(-500) }))
   app.get('/control/mails', (_request, response) => void response.json({ items: mails.slice(-200) }))
   app.post('/control/mode', (request, response) => {
-    const { mode, slowMs, failing } = request.body as { mode?: TextStore['mode'], slowMs?: number, failing?: string[] }
+    const { mode, slowMs, failing, refuseMail } = request.body as { mode?: TextStore['mode'], slowMs?: number, failing?: string[], refuseMail?: boolean }
     if (mode) store.mode = mode
     if (typeof slowMs === 'number') store.slowMs = Math.min(60_000, Math.max(0, slowMs))
     if (failing) store.failing = new Set(failing)
+    if (typeof refuseMail === 'boolean') store.refuseMail = refuseMail
     response.json({ mode: store.mode })
   })
   app.post('/control/reset', (_request, response) => {

@@ -9,6 +9,8 @@ export class TextStore {
   mode: FakeTextMode = 'normal'
   slowMs = 300
   failing = new Set<string>()
+  /** The mail server's: every address is refused. */
+  refuseMail = false
 
   add(text: Omit<FakeText, 'sid' | 'at'>): FakeText {
     const kept = { ...text, sid: `SM${randomBytes(16).toString('hex')}`, at: new Date().toISOString() }
@@ -21,5 +23,6 @@ export class TextStore {
     this.texts = []
     this.mode = 'normal'
     this.failing.clear()
+    this.refuseMail = false
   }
 }

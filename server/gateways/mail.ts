@@ -14,13 +14,16 @@ export async function sendMail(mail: MailToSend): Promise<SendResult> {
   try {
     const sent = await transport.sendMail({
       messageId: `<${mail.id}@dawnward.example.org>`, from: process.env.DAWNWARD_MAIL_FROM ?? 'Ferncombe Eye Unit <no-reply@example.org>', to: mail.to, subject: mail.subject, text: mail.body,
-      ...(mail.calendar ? { icalEvent: { method: 'PUBLISH', content: mail.calendar } } : {}),
+      ...(mail.calendar ? { icalEvent: { method: /^METHOD:CANCEL/m.test(mail.calendar) ? 'CANCEL' : 'PUBLISH', content: mail.calendar } } : {}),
     })
     return { outcome: 'sent', providerId: String(sent.messageId) }
   }
   catch (error) {
-    const { responseCode, message } = error as { responseCode?: number, message?: string }
-    return { outcome: 'refused', why: String(message ?? 'mail failed').slice(0, 200), permanent: responseCode !== undefined && responseCode >= 500 }
+    const { responseCode, message, syscall, code } = error as { responseCode?: number, message?: string, syscall?: string, code?: string }
+    const why = String(message ?? 'mail failed').slice(0, 200)
+    if (responseCode !== undefined) return { outcome: 'refused', why, permanent: responseCode >= 500 }
+    // No connection was made: nothing left. Broken off later, nobody can say whether the mail was taken.
+    return syscall === 'connect' || code === 'EDNS' || /^(?:Connection timeout|Greeting never received)/.test(why) ? { outcome: 'refused', why, permanent: false } : { outcome: 'unknown', why }
   }
 }
 

@@ -1,6 +1,7 @@
 import https from 'node:https'
 import http from 'node:http'
 import twilio from 'twilio'
+import { clockOffsetMs } from '#server/utils/clock'
 
 /** What a send can end in. `unknown` means that the provider may or may not have it: ask before sending again. */
 export type SendResult = { outcome: 'sent', providerId: string } | { outcome: 'refused', why: string, permanent: boolean } | { outcome: 'unknown', why: string }
@@ -79,7 +80,8 @@ export async function sendText(text: TextToSend): Promise<SendResult> {
 export async function findText(text: TextToSend): Promise<string | undefined> {
   const service = client()
   if (!service) return undefined
-  const since = new Date(text.notBefore.getTime() - 60_000)
+  // The provider's clock is the real one, whatever the demo's says.
+  const since = new Date(text.notBefore.getTime() - clockOffsetMs() - 60_000)
   const found = await service.messages.list({ to: text.to, dateSentAfter: since, limit: 200 })
   return found.find(each => each.body === text.body)?.sid
 }

@@ -40,7 +40,7 @@ export async function createTestDatabase() {
   }
 }
 
-export interface Product { url: string, fakes: RunningFakes, pool: pg.Pool, stop: () => Promise<void>, log: () => string }
+export interface Product { url: string, fakes: RunningFakes, pool: pg.Pool, stop: () => Promise<void>, end: () => Promise<number | null>, log: () => string }
 
 /** The built product on a port of its own, with its own database and its own fakes. */
 export async function startProduct(): Promise<Product> {
@@ -71,7 +71,12 @@ export async function startProduct(): Promise<Product> {
     }
     await new Promise(resolve => setTimeout(resolve, 250))
   }
-  return { url, fakes, pool: database.pool, stop, log: () => said }
+  /** As whoever runs it would: with a request to end, and the code that it ends with. */
+  const end = () => new Promise<number | null>((resolve) => {
+    child.once('exit', code => resolve(code))
+    child.kill('SIGTERM')
+  })
+  return { url, fakes, pool: database.pool, stop, end, log: () => said }
 }
 
 /** Signs in and answers a caller that carries the session. */

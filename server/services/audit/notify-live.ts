@@ -1,7 +1,7 @@
 import { sql } from 'drizzle-orm'
 import type { Database } from '#server/db/client'
 
-export type LiveTopic = 'escalation' | 'visit' | 'message' | 'pathway'
+export type LiveTopic = 'escalation' | 'visit' | 'message' | 'pathway' | 'clock'
 
 /**
  * Tells every app process that rows changed, after the commit and with ids only. NOTIFY inside a write

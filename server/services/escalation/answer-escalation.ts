@@ -53,6 +53,22 @@ export async function answerEscalation(ctx: ServiceContext, input: { id: string,
   return answered
 }
 
+/** The person who was told cannot take it: the next rung is due at once. It stays open, and nobody has it. */
+export async function handOnEscalation(ctx: ServiceContext, input: { id: string }): Promise<Row> {
+  const handed = await ctx.db.transaction(async (tx) => {
+    const current = await loadEscalation(tx, ctx, input.id)
+    if (!mayAnswer(ctx.actor, current)) throw new DomainError('escalation.not-allowed', 'A surgeon of this site answers escalations.')
+    if (current.state !== 'open') throw new DomainError('escalation.already-acknowledged', 'Somebody has already acknowledged this.')
+    const [row] = await tx.update(escalations).set({ nextRungAt: ctx.now, rowVersion: sql`${escalations.rowVersion} + 1` }).where(eq(escalations.id, input.id)).returning()
+    if (!row) throw new DomainError('escalation.stale', 'This escalation changed meanwhile. Look at it again.')
+    await tx.insert(escalationActions).values({ escalationId: row.id, at: ctx.now, kind: 'recorded', personId: ctx.actor.personId, words: 'Handed on: the next rung is told now.' })
+    await appendAudit(tx, { at: ctx.now, event: 'escalation.recorded', personId: ctx.actor.personId, subjectKind: 'escalation', subjectId: row.id, siteId: row.siteId, payload: { handedOn: true } })
+    return row
+  })
+  await notifyLive(ctx.db, 'escalation', handed.siteId, [handed.id])
+  return handed
+}
+
 async function loadEscalation(tx: Transaction, ctx: ServiceContext, id: string): Promise<Row> {
   const [row] = await tx.select({ escalation: escalations }).from(escalations).innerJoin(pathways, eq(pathways.id, escalations.pathwayId))
     .where(and(eq(escalations.id, id), pathwaysInScope(ctx.actor))).for('update', { of: escalations })

@@ -2,6 +2,7 @@ import { and, eq, gte, inArray, sql } from 'drizzle-orm'
 import { demoClock, messages, patients, people } from '#server/db/schema/index'
 import { readFakes, tellFakes } from '#server/gateways/fakes'
 import { appendAudit } from '#server/services/audit/append-audit'
+import { notifyLive } from '#server/services/audit/notify-live'
 import type { SystemContext } from '#server/services/context'
 import { DomainError } from '#shared/domain/errors'
 
@@ -41,9 +42,11 @@ export async function setDemoFault(input: { mode?: string, failing?: string[] })
 /** Moves the demo's clock forward for every process; it never goes back, since what was sent stays sent. */
 export async function moveDemoClock(ctx: SystemContext, input: { minutes: number }): Promise<{ offsetSeconds: number }> {
   requireDemo()
-  return ctx.db.transaction(async (tx) => {
+  const moved = await ctx.db.transaction(async (tx) => {
     const [row] = await tx.update(demoClock).set({ offsetSeconds: sql`${demoClock.offsetSeconds} + ${input.minutes * 60}` }).where(eq(demoClock.id, 1)).returning()
     await appendAudit(tx, { at: ctx.now, event: 'demo.clock-moved', personId: null, subjectKind: 'demo', subjectId: 'clock', payload: { minutes: input.minutes } })
     return { offsetSeconds: row?.offsetSeconds ?? 0 }
   })
+  await notifyLive(ctx.db, 'clock', null, [])
+  return moved
 }

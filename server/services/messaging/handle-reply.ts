@@ -1,4 +1,4 @@
-import { and, eq, inArray, isNull } from 'drizzle-orm'
+import { and, eq, inArray, isNull, or } from 'drizzle-orm'
 import { inboundTexts, messageEvents, messages } from '#server/db/schema/index'
 import { mayWrite, replySites } from '#server/policies/messaging'
 import { appendAudit } from '#server/services/audit/append-audit'
@@ -9,9 +9,10 @@ import { DomainError } from '#shared/domain/errors'
 /** Takes a reply off the list, with what was done. The first of two people who do so is kept; the other is told. */
 export async function handleReply(ctx: ServiceContext, input: { id: string, words: string }): Promise<void> {
   const siteId = await ctx.db.transaction(async (tx) => {
-    const [row] = await tx.select().from(inboundTexts).where(and(eq(inboundTexts.id, input.id), inArray(inboundTexts.siteId, replySites(ctx.actor)))).for('update')
-    if (!row?.siteId) throw new DomainError('messaging.not-found', 'There is no such reply.')
-    if (!mayWrite(ctx.actor, row.siteId)) throw new DomainError('messaging.not-allowed', 'You may not settle replies at this site.')
+    const sites = replySites(ctx.actor)
+    const [row] = await tx.select().from(inboundTexts).where(and(eq(inboundTexts.id, input.id), or(inArray(inboundTexts.siteId, sites), isNull(inboundTexts.siteId)))).for('update')
+    if (!row || !sites.length) throw new DomainError('messaging.not-found', 'There is no such reply.')
+    if (row.siteId ? !mayWrite(ctx.actor, row.siteId) : !sites.some(site => mayWrite(ctx.actor, site))) throw new DomainError('messaging.not-allowed', 'You may not settle replies at this site.')
     const [handled] = await tx.update(inboundTexts).set({ handledBy: ctx.actor.personId, handledAt: ctx.now, handledWords: input.words }).where(and(eq(inboundTexts.id, row.id), isNull(inboundTexts.handledAt))).returning({ id: inboundTexts.id })
     if (!handled) throw new DomainError('messaging.stale', 'Somebody settled this reply meanwhile.', { detail: { current: { handledAt: row.handledAt?.toISOString(), handledWords: row.handledWords } } })
     await appendAudit(tx, { at: ctx.now, event: 'messaging.reply-handled', personId: ctx.actor.personId, subjectKind: 'reply', subjectId: row.id, siteId: row.siteId })

@@ -1,9 +1,9 @@
-import { and, asc, desc, eq, gte, inArray, isNull, lte, ne, sql } from 'drizzle-orm'
+import { and, asc, desc, eq, gte, inArray, isNull, lte, ne, or, sql } from 'drizzle-orm'
 import { escalations, inboundTexts, messageEvents, messages, patients, visits } from '#server/db/schema/index'
 import { replySites } from '#server/policies/messaging'
 import type { ServiceContext } from '#server/services/context'
 
-/** Replies that wait for a person, the worried first, and messages that reached nobody, at the caller's sites. */
+/** Replies that wait for a person, the worried first, and messages that reached nobody, at the caller's sites. A number that nobody knows is on every unit's list until one settles it. */
 export async function listReplies(ctx: ServiceContext, input: { limit: number }) {
   const siteIds = replySites(ctx.actor)
   if (!siteIds.length) return { replies: [], stuck: [], understood: 0 }
@@ -12,7 +12,7 @@ export async function listReplies(ctx: ServiceContext, input: { limit: number })
     ctx.db.select({ reply: inboundTexts, patient: patients, visit: visits, escalation: escalations }).from(inboundTexts)
       .leftJoin(patients, eq(patients.id, inboundTexts.patientId)).leftJoin(visits, eq(visits.id, inboundTexts.visitId))
       .leftJoin(escalations, and(eq(escalations.patientId, inboundTexts.patientId), ne(escalations.state, 'closed'), sql`${inboundTexts.meaning} = 'worried'`))
-      .where(and(inArray(inboundTexts.siteId, siteIds), isNull(inboundTexts.handledAt)))
+      .where(and(or(inArray(inboundTexts.siteId, siteIds), isNull(inboundTexts.siteId)), isNull(inboundTexts.handledAt)))
       .orderBy(sql`${inboundTexts.meaning} <> 'worried'`, asc(inboundTexts.receivedAt)).limit(input.limit),
     ctx.db.select({ message: messages, patient: patients }).from(messages).innerJoin(patients, eq(patients.id, messages.patientId))
       .where(and(inArray(messages.siteId, siteIds), inArray(messages.state, ['failed', 'held']), lte(messages.dueAt, new Date(ctx.now.getTime() + 86_400_000)),

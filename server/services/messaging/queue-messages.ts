@@ -1,35 +1,26 @@
 import { and, eq, inArray } from 'drizzle-orm'
-import dayjs from 'dayjs'
-import timezone from 'dayjs/plugin/timezone.js'
-import utc from 'dayjs/plugin/utc.js'
 import type { Transaction } from '#server/db/client'
 import type { escalations, pathways, patients, sites, visits } from '#server/db/schema/index'
-import { messageEvents, messages, patientLinks } from '#server/db/schema/index'
+import { messageEvents, messages } from '#server/db/schema/index'
 import type { Reachable } from '#server/services/escalation/find-surgeon'
-import { hashSecret, newSecret } from '#server/services/people/tokens'
+import { keepMessages, linkMark } from '#server/services/messaging/keep-messages'
+import type { NewMessage } from '#server/services/messaging/keep-messages'
+import { origin } from '#server/services/messaging/patient-link'
+import { visitCalendar } from '#server/services/messaging/visit-calendar'
+import { inZone } from '#shared/domain/messaging/quiet-hours'
 import { planMessages } from '#shared/domain/messaging/reminder-plan'
 import type { Occasion } from '#shared/domain/messaging/reminder-plan'
+import { visitWords } from '#shared/domain/messaging/visit-words'
 import { renderTemplate } from '#shared/domain/messaging/templates'
 import type { TemplateValues } from '#shared/domain/messaging/templates'
 import { languages } from '#shared/domain/messaging/vocabulary'
 import type { ContactPreferences, Language, StoredKind } from '#shared/domain/messaging/vocabulary'
-
-dayjs.extend(utc)
-dayjs.extend(timezone)
 
 type Patient = typeof patients.$inferSelect
 type Visit = typeof visits.$inferSelect
 type Site = typeof sites.$inferSelect
 type Pathway = typeof pathways.$inferSelect
 type Escalation = typeof escalations.$inferSelect
-type NewMessage = typeof messages.$inferInsert
-
-const linkDays = 60
-
-/** The address that links in messages lead to. */
-export function origin(): string {
-  return process.env.DAWNWARD_ORIGIN ?? 'http://127.0.0.1:3000'
-}
 
 function preferencesOf(patient: Patient): ContactPreferences {
   const allowed = patient.messageConsent === true && patient.diedOn === null
@@ -40,20 +31,18 @@ function languageOf(patient: Patient): Language {
   return languages.find(each => each === patient.language) ?? 'en'
 }
 
-/** A link that opens this patient's own page. Only its hash is kept, so a stolen table opens nothing. */
-export async function makeLink(tx: Transaction, input: { patientId: string, pathwayId: string | null, visitId: string | null, now: Date }): Promise<string> {
-  const token = newSecret()
-  await tx.insert(patientLinks).values({ tokenHash: hashSecret(token), patientId: input.patientId, pathwayId: input.pathwayId, visitId: input.visitId, createdAt: input.now, expiresAt: new Date(input.now.getTime() + linkDays * 86_400_000) })
-  return `${origin()}/v/${token}`
+export interface PatientMessageInput {
+  occasion: Occasion
+  patient: Patient
+  pathway: Pathway
+  site: Site
+  visit?: Visit
+  subjectKey: string
+  values: TemplateValues
+  /** The moment that the message names: its date and time are written in the language of each message. */
+  at?: Date
+  now: Date
 }
-
-async function insertOnce(tx: Transaction, rows: NewMessage[], now: Date): Promise<void> {
-  if (!rows.length) return
-  const inserted = await tx.insert(messages).values(rows).onConflictDoNothing().returning({ id: messages.id, state: messages.state })
-  if (inserted.length) await tx.insert(messageEvents).values(inserted.map(row => ({ messageId: row.id, at: now, kind: row.state })))
-}
-
-export interface PatientMessageInput { occasion: Occasion, patient: Patient, pathway: Pathway, site: Site, visit?: Visit, subjectKey: string, values: TemplateValues, now: Date }
 
 /** Why a person has to ring instead. */
 function whyCall(patient: Patient): string {
@@ -63,27 +52,35 @@ function whyCall(patient: Patient): string {
   return patient.preferredChannel === 'call' ? 'prefers a call' : 'cannot be reached in time by message'
 }
 
-/** Plans one occasion and writes its rows in the caller's transaction. A `call` is written as held, with its reason: the nurse's list shows it. */
+/**
+ * Plans one occasion and writes its rows in the caller's transaction: nothing after a death, nothing for a closed pathway but the
+ * answer to somebody who writes. A `call` is written as held, with its reason: the nurse's list shows it.
+ */
 export async function queuePatientMessages(tx: Transaction, input: PatientMessageInput): Promise<void> {
   const { patient, pathway, site, visit, now } = input
-  if (patient.diedOn) return
+  if (patient.diedOn || (pathway.state === 'closed' && input.occasion.kind !== 'answer')) return
   const planned = planMessages({ occasion: input.occasion, siteZone: site.zone, preferences: preferencesOf(patient), now })
-  const rows: NewMessage[] = []
   const about = { recipientKey: `patient:${patient.id}`, subjectKey: input.subjectKey, patientId: patient.id, pathwayId: pathway.id, visitId: visit?.id ?? null, siteId: site.id, createdAt: now }
-  for (const message of planned) {
+  const valuesIn = (language: Language): TemplateValues => ({ phone: site.phone, link: linkMark, ...input.values, ...(input.at ? visitWords(input.at, site.zone, language) : {}) })
+  const rows = planned.map((message): NewMessage => {
+    const when = { kind: message.kind, occasion: message.occasion, topic: message.topic, dueAt: message.dueAt, expiresAt: message.expiresAt }
     if (message.channel === 'call') {
-      const rendered = renderTemplate({ kind: message.kind, channel: 'text', language: 'en', values: { phone: site.phone, link: origin(), ...input.values } })
-      rows.push({ ...about, kind: message.kind, occasion: message.occasion, channel: 'text', toAddress: patient.phone ?? '', body: rendered.text, dueAt: message.dueAt, expiresAt: message.expiresAt, state: 'held', lastError: whyCall(patient) })
-      continue
+      // A person reads it out: in English, and no link is needed.
+      const rendered = renderTemplate({ kind: message.kind, channel: 'text', language: 'en', values: { ...valuesIn('en'), link: origin() } })
+      return { ...about, ...when, channel: 'text', toAddress: patient.phone ?? '', body: rendered.text, state: 'held', lastError: whyCall(patient) }
     }
-    const link = await makeLink(tx, { patientId: patient.id, pathwayId: pathway.id, visitId: visit?.id ?? null, now })
-    const rendered = renderTemplate({ kind: message.kind, channel: message.channel, language: languageOf(patient), values: { phone: site.phone, link, ...input.values } })
-    rows.push({
-      ...about, kind: message.kind, occasion: message.occasion, channel: message.channel, toAddress: (message.channel === 'text' ? patient.phone : patient.email) ?? '',
-      subject: rendered.subject ?? '', body: rendered.text, language: rendered.language, dueAt: message.dueAt, expiresAt: message.expiresAt,
-    })
-  }
-  await insertOnce(tx, rows, now)
+    const language = languageOf(patient)
+    const rendered = renderTemplate({ kind: message.kind, channel: message.channel, language, values: valuesIn(language) })
+    return {
+      ...about, ...when, channel: message.channel, toAddress: (message.channel === 'text' ? patient.phone : patient.email) ?? '', subject: rendered.subject ?? '', body: rendered.text, language: rendered.language,
+      calendar: visit && message.channel === 'email' && isAboutVisit(message.kind) ? visitCalendar({ visit, site, cancelled: message.kind === 'visit.cancelled', now }) : null,
+    }
+  })
+  await keepMessages(tx, rows, now)
+}
+
+function isAboutVisit(kind: StoredKind): boolean {
+  return kind === 'visit.changed' || kind === 'visit.cancelled' || kind === 'visit.reminder'
 }
 
 export interface VisitMessageInput { visit: Visit, patient: Patient, pathway: Pathway, site: Site, now: Date, change?: 'moved' | 'cancelled' }
@@ -91,14 +88,12 @@ export interface VisitMessageInput { visit: Visit, patient: Patient, pathway: Pa
 /** Reminders of a visit, and the message that it was moved or cancelled. */
 export async function queueVisitMessages(tx: Transaction, input: VisitMessageInput): Promise<void> {
   const { visit, site, now, change } = input
-  const local = dayjs(visit.startsAt).tz(site.zone)
-  const values = { date: local.format('dddd D MMMM'), time: local.format('HH:mm'), place: site.name }
-  const base = { patient: input.patient, pathway: input.pathway, site, visit, subjectKey: `visit:${visit.id}`, values, now }
+  const base = { patient: input.patient, pathway: input.pathway, site, visit, subjectKey: `visit:${visit.id}`, values: { place: site.name }, at: visit.startsAt, now }
   if (change) await queuePatientMessages(tx, { ...base, occasion: { kind: change === 'moved' ? 'visit-changed' : 'visit-cancelled', startsAt: visit.startsAt, version: visit.rowVersion } })
   if (change === 'cancelled') return
   await queuePatientMessages(tx, { ...base, occasion: { kind: 'visit', visitKind: visit.kind, startsAt: visit.startsAt } })
   const surgery = input.pathway.operatedAt
-  if (visit.kind === 'day-one' && surgery) await queuePatientMessages(tx, { ...base, occasion: { kind: 'note-signed', surgeryDate: dayjs(surgery).tz(site.zone).format('YYYY-MM-DD'), signedAt: surgery } })
+  if (visit.kind === 'day-one' && surgery) await queuePatientMessages(tx, { ...base, occasion: { kind: 'note-signed', surgeryDate: inZone(surgery, site.zone).toPlainDate().toString(), signedAt: surgery } })
 }
 
 export interface AlertInput { escalation: Escalation, person: Reachable, rung: number, now: Date }
@@ -107,7 +102,7 @@ export interface AlertInput { escalation: Escalation, person: Reachable, rung: n
 export async function queueAlert(tx: Transaction, { escalation, person, rung, now }: AlertInput): Promise<void> {
   const words = { 'now': 'Now', 'today': 'Today', 'this-week': 'This week' }[escalation.urgency]
   const planned = planMessages({ occasion: { kind: 'alert', rung: Math.max(0, rung - 1), urgency: escalation.urgency }, siteZone: 'UTC', now, preferences: { preferred: 'text', hasMobile: Boolean(person.phone), hasEmail: true, textsStopped: false, wantsDropsReminders: false } })
-  await insertOnce(tx, planned.flatMap((message) => {
+  await keepMessages(tx, planned.flatMap((message) => {
     if (message.channel === 'call') return []
     const rendered = renderTemplate({ kind: message.kind, channel: message.channel, language: 'en', values: { urgency: words, number: String(escalation.number), link: `${origin()}/escalations` } })
     return [{
@@ -122,7 +117,7 @@ export interface LetterInput { pathway: Pathway, site: Site, toEmail: string, li
 /** Tells a referrer that a letter is ready: a link behind sign-in, no name and nothing clinical in the mail. */
 export async function queueLetter(tx: Transaction, { pathway, site, toEmail, link, version, now }: LetterInput): Promise<void> {
   const planned = planMessages({ occasion: { kind: 'letter', version }, siteZone: site.zone, now, preferences: { preferred: 'email', hasMobile: false, hasEmail: true, textsStopped: false, wantsDropsReminders: false } })
-  await insertOnce(tx, planned.flatMap((message) => {
+  await keepMessages(tx, planned.flatMap((message) => {
     if (message.channel === 'call') return []
     const rendered = renderTemplate({ kind: message.kind, channel: 'email', language: 'en', values: { link, phone: site.phone } })
     return [{ kind: message.kind, recipientKey: `referrer:${toEmail}`, subjectKey: `pathway:${pathway.id}`, occasion: message.occasion, channel: 'email' as const, patientId: pathway.patientId, pathwayId: pathway.id, siteId: site.id, toAddress: toEmail, subject: rendered.subject ?? '', body: rendered.text, language: 'en', dueAt: message.dueAt, expiresAt: message.expiresAt, createdAt: now }]

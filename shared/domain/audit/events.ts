@@ -11,7 +11,7 @@ export const auditEvents = [
   'visit.booked', 'visit.moved', 'visit.cancelled', 'visit.arrived', 'visit.sent-in', 'visit.missing', 'visit.step-logged', 'visit.session-added', 'visit.session-closed',
   'review.draft-saved', 'review.signed', 'review.amended',
   'escalation.raised', 'escalation.joined', 'escalation.acknowledged', 'escalation.taken-over', 'escalation.recorded', 'escalation.closed', 'escalation.rung', 'escalation.shift-set', 'escalation.thresholds-set',
-  'messaging.sent-by-hand', 'messaging.reply-handled', 'messaging.texts-stopped', 'messaging.texts-started', 'messaging.link-opened', 'messaging.link-refused', 'messaging.answered-by-patient', 'messaging.symptoms-answered',
+  'messaging.sent-by-hand', 'messaging.reply-handled', 'messaging.texts-stopped', 'messaging.texts-started', 'messaging.link-opened', 'messaging.link-refused', 'messaging.answered-by-patient', 'messaging.symptoms-answered', 'messaging.check-unanswered',
   'outcome.letter-sent', 'outcome.letter-signed',
   'demo.clock-moved',
 ] as const

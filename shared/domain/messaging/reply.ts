@@ -160,3 +160,10 @@ export function classifyAlertReply(text: string): 'have' | 'hand-on' | 'words' {
   if (/^(?:i )?(?:have|have it|have this|got it)$/.test(words)) return 'have'
   return /^(?:hand )?on$/.test(words) ? 'hand-on' : 'words'
 }
+
+/** The same with the number of the escalation that it names, if it does: "HAVE 1042". A number in free words names nothing. */
+export function readAlertReply(text: string): { meaning: 'have' | 'hand-on' | 'words', number: number | undefined } {
+  const [, words = '', digits] = /^(.*?)\s+#?(\d{1,9})\s*\.?$/s.exec(text.trim()) ?? []
+  const named = digits === undefined ? 'words' : classifyAlertReply(words)
+  return named === 'words' ? { meaning: classifyAlertReply(text), number: undefined } : { meaning: named, number: Number(digits) }
+}

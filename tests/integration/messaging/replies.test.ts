@@ -4,7 +4,7 @@ import { escalations, inboundTexts, messages, patientLinks, patients, visits } f
 import { answerSymptoms } from '#server/services/messaging/answer-symptoms'
 import { answerVisit } from '#server/services/messaging/answer-visit'
 import { openLink } from '#server/services/messaging/open-link'
-import { makeLink } from '#server/services/messaging/queue-messages'
+import { makeLink } from '#server/services/messaging/patient-link'
 import { receiveText } from '#server/services/messaging/receive-text'
 import { recordReceipt } from '#server/services/messaging/record-receipt'
 import { addDueTexts, addPatient, ids, openMessagingDatabase } from '#tests/factories/messaging'

@@ -1,6 +1,6 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import { answerFor, classifyAlertReply, classifyReply, normaliseReply, replyMeanings } from '#shared/domain/messaging/reply'
+import { answerFor, classifyAlertReply, readAlertReply, classifyReply, normaliseReply, replyMeanings } from '#shared/domain/messaging/reply'
 import { cannotComePhrases, startReplies, stopReplies, strongYes, worriedSigns, worriedWords } from '#shared/domain/messaging/reply-words'
 
 const listedWords = fc.constantFrom(...strongYes, ...cannotComePhrases, ...stopReplies, ...startReplies, ...worriedWords)
@@ -169,5 +169,14 @@ describe('folding', () => {
 describe('an answer to an alert', () => {
   it.each([['HAVE', 'have'], ['have.', 'have'], ['I have it', 'have'], ['HAND ON', 'hand-on'], ['on', 'hand-on'], ['I have a question', 'words'], ['they have', 'words'], ['got it', 'have'], ['on my way', 'words'], ['come on', 'words'], ['ok', 'words'], ['', 'words']] as const)('%s is %s', (text, expected) => {
     expect(classifyAlertReply(text)).toBe(expected)
+  })
+})
+
+describe('an answer to an alert that names an escalation', () => {
+  it.each([
+    ['HAVE 1042', 'have', 1042], ['have #7.', 'have', 7], ['on 12', 'hand-on', 12], ['HAVE', 'have', undefined], ['Hand on', 'hand-on', undefined],
+    ['In theatre until 4', 'words', undefined], ['have 12 more', 'words', undefined], ['', 'words', undefined],
+  ] as const)('%s', (text, meaning, number) => {
+    expect(readAlertReply(text)).toEqual({ meaning, number })
   })
 })
