@@ -53,7 +53,7 @@ export function useListOrder(list: MaybeRefOrGetter<DayListView>, zone: MaybeRef
       const expected = forecast.value?.cases.find(each => each.id === one.id)
       const from = one.startedAt ? minute(one.startedAt) : expected?.expectedStartMinute ?? span.startMinute
       const to = one.endedAt ? minute(one.endedAt) : isOver(one) ? from + one.plannedMinutes : from + Math.exp(one.duration.logMedian)
-      return { id: one.id, plannedStartMinute: span.startMinute, from, to, slowTo: isOver(one) ? null : expected?.slowFinishMinute ?? null }
+      return { id: one.id, plannedStartMinute: span.startMinute, expectedStartMinute: one.startedAt ? null : expected?.expectedStartMinute ?? null, from, to, slowTo: isOver(one) ? null : expected?.slowFinishMinute ?? null }
     })
   })
   return { cases, order, isTrying, base, forecast, savedForecast, breaches, spans, move, putBack }

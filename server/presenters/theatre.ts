@@ -5,6 +5,7 @@ import type { getList } from '#server/services/theatre/get-list'
 import type { getTheatreDay, LoadedList } from '#server/services/theatre/get-theatre-day'
 import type { Actor } from '#shared/domain/people/vocabulary'
 import { forecastDay } from '#shared/domain/theatre/day-plan'
+import { notBeforeMinute } from '#shared/domain/theatre/list-breaches'
 import type { RiskAssessment } from '#shared/domain/theatre/vocabulary'
 
 /** A risk that was worked out here has a probability; one entered with older records has none. */
@@ -53,14 +54,14 @@ function presentDayCase({ theatreCase, pathway, patient, risk, plan, duration, p
   }
 }
 
-export function presentDayList({ list, surgeonName, lockedByName, ownCases, changes, cases }: LoadedList, actor: Actor, now: Date) {
+export function presentDayList({ list, surgeonName, lockedByName, zone, ownCases, changes, cases }: LoadedList, actor: Actor, now: Date) {
   const canRun = may(actor, 'runTheatre', list.siteId)
   const isOver = list.endsAt <= now
   const view = {
     ...presentList(list), surgeonName, isOver, ownCases,
     lockedByName, anaesthetistFrom: list.anaesthetistFrom?.toISOString() ?? null, anaesthetistTo: list.anaesthetistTo?.toISOString() ?? null,
     changesSinceLock: changes.map(({ change, by }) => ({ id: change.id, at: change.at.toISOString(), by, kind: change.kind, words: change.words, reason: change.reason })),
-    cases: cases.map(row => ({ ...presentDayCase(row), abilities: { canCancel: canRun && row.theatreCase.state === 'planned', canChange: canRun && row.theatreCase.state === 'planned' && !isOver, canCheck: may(actor, 'checkSafety', list.siteId) } })),
+    cases: cases.map(row => ({ ...presentDayCase(row), notBeforeMinute: notBeforeMinute({ startsAt: list.startsAt.toISOString(), zone, anaesthetistFrom: list.anaesthetistFrom?.toISOString() ?? null }, row.theatreCase.constraints), abilities: { canCancel: canRun && row.theatreCase.state === 'planned', canChange: canRun && row.theatreCase.state === 'planned' && !isOver, canCheck: may(actor, 'checkSafety', list.siteId) } })),
   }
   const forecast = isOver ? null : forecastDay(view, now.toISOString())
   return {

@@ -1,7 +1,7 @@
 import { and, asc, desc, eq, gte, inArray, isNull, lt, ne, sql } from 'drizzle-orm'
 import { alias } from 'drizzle-orm/pg-core'
 import type { SQL } from 'drizzle-orm'
-import { lensPlans, pathways, patients, people, riskAssessments, roles, theatreCases, theatreListChanges, theatreLists } from '#server/db/schema/index'
+import { lensPlans, pathways, patients, people, riskAssessments, roles, sites, theatreCases, theatreListChanges, theatreLists } from '#server/db/schema/index'
 import type { ServiceContext } from '#server/services/context'
 import { pathwaysInScope } from '#server/services/pathway/pathway-scope'
 import { durationOf, loadPastCases, modelOf, plannedMinutesOf } from '#server/services/theatre/predict-minutes'
@@ -23,7 +23,7 @@ export async function loadLists(ctx: ServiceContext, condition: SQL) {
   const listIds = ctx.db.select({ id: theatreLists.id }).from(theatreLists).where(condition)
   const pathwayIds = ctx.db.select({ id: theatreCases.pathwayId }).from(theatreCases).where(inArray(theatreCases.listId, listIds))
   const [lists, cases, risks, plans, past, changes] = await Promise.all([
-    ctx.db.select({ list: theatreLists, surgeonName: people.name, lockedByName: locker.name }).from(theatreLists).innerJoin(people, eq(people.id, theatreLists.surgeonId)).leftJoin(locker, eq(locker.id, theatreLists.lockedBy)).where(condition).orderBy(asc(theatreLists.startsAt), asc(theatreLists.room), asc(theatreLists.id)),
+    ctx.db.select({ list: theatreLists, surgeonName: people.name, lockedByName: locker.name, zone: sites.zone }).from(theatreLists).innerJoin(people, eq(people.id, theatreLists.surgeonId)).innerJoin(sites, eq(sites.id, theatreLists.siteId)).leftJoin(locker, eq(locker.id, theatreLists.lockedBy)).where(condition).orderBy(asc(theatreLists.startsAt), asc(theatreLists.room), asc(theatreLists.id)),
     ctx.db.select({ theatreCase: theatreCases, pathway: pathways, patient: { id: patients.id, name: patients.name, birthDate: patients.birthDate, recordNumber: patients.recordNumber, alerts: patients.alerts, interpreterLanguage: patients.interpreterLanguage } }).from(theatreCases)
       .innerJoin(pathways, eq(pathways.id, theatreCases.pathwayId)).innerJoin(patients, eq(patients.id, pathways.patientId))
       .where(and(inArray(theatreCases.listId, listIds), ne(theatreCases.state, 'cancelled'), pathwaysInScope(ctx.actor))).orderBy(asc(theatreCases.position), asc(theatreCases.id)),
@@ -32,10 +32,10 @@ export async function loadLists(ctx: ServiceContext, condition: SQL) {
     loadPastCases(ctx.db, sql`${theatreLists.surgeonId} in (${ctx.db.select({ id: theatreLists.surgeonId }).from(theatreLists).where(condition)})`),
     ctx.db.select({ change: theatreListChanges, by: people.name }).from(theatreListChanges).innerJoin(people, eq(people.id, theatreListChanges.personId)).where(and(inArray(theatreListChanges.listId, listIds), eq(theatreListChanges.afterLock, true))).orderBy(desc(theatreListChanges.at)).limit(100),
   ])
-  return lists.map(({ list, surgeonName, lockedByName }) => {
+  return lists.map(({ list, surgeonName, lockedByName, zone }) => {
     const model = modelOf(past, list.surgeonId)
     return {
-      list, surgeonName, lockedByName, ownCases: past.filter(row => row.surgeonId === list.surgeonId).length,
+      list, surgeonName, lockedByName, zone, ownCases: past.filter(row => row.surgeonId === list.surgeonId).length,
       changes: changes.filter(({ change }) => change.listId === list.id && list.lockedAt !== null && change.at >= list.lockedAt),
       cases: cases.filter(row => row.theatreCase.listId === list.id).map((row) => {
         const risk = risks.find(each => each.pathwayId === row.pathway.id)

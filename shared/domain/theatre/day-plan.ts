@@ -17,6 +17,8 @@ export interface DayCase {
   duration: LogNormalMinutes
   startedAt: string | null
   endedAt: string | null
+  /** Minutes from the start of the list before which it cannot begin: the interpreter or the anaesthetist is not there yet. */
+  notBeforeMinute?: number | null
 }
 export interface DayList { startsAt: string, endsAt: string, cases: readonly DayCase[] }
 
@@ -50,7 +52,7 @@ export function forecastDay(list: DayList, now: string): ListForecast | null {
   const free = freeFrom(list.cases.filter(one => one.state !== 'cancelled' && isOver(one)), minute)
   const within = (value: number, most: number) => Math.min(most, Math.max(0, value))
   return forecastList({
-    cases: ordered.map(({ id, duration }) => ({ id, duration })),
+    cases: ordered.map(({ id, duration, notBeforeMinute }) => ({ id, duration, ...(notBeforeMinute ? { notBeforeMinute: within(notBeforeMinute, lastMinute) } : {}) })),
     turnoverMinutes,
     endMinute: within(minute(list.endsAt), lastMinute),
     ...(underWay?.startedAt

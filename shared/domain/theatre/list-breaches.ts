@@ -2,7 +2,7 @@ import { Temporal } from 'temporal-polyfill'
 import type { Eye } from '#shared/domain/pathway/vocabulary'
 import { isOver, plannedSpans } from '#shared/domain/theatre/day-plan'
 import type { CaseState } from '#shared/domain/theatre/day-plan'
-import { findBreaches } from '#shared/domain/theatre/list-constraints'
+import { findBreaches, minuteOf } from '#shared/domain/theatre/list-constraints'
 import type { CaseConstraints, ConstraintBreach } from '#shared/domain/theatre/list-constraints'
 
 export interface BreachCase { id: string, patientName: string, eye: Eye, constraints: CaseConstraints, plannedMinutes: number, state: CaseState, endedAt: string | null }
@@ -18,6 +18,16 @@ export function breachesOf(list: BreachList): ConstraintBreach[] {
   const over = new Set(list.cases.filter(isOver).map(one => one.id))
   return findBreaches(list.cases.map((one, index) => ({ ...one, startMinuteOfDay: offset + spans[index]!.startMinute, endMinuteOfDay: offset + spans[index]!.endMinute })), hours)
     .filter(breach => !over.has(breach.caseId))
+}
+
+/** The first minute of the list at which this case can begin, because its interpreter or the anaesthetist is there; `null` when nobody is waited for. */
+export function notBeforeMinute(list: Pick<BreachList, 'startsAt' | 'zone' | 'anaesthetistFrom'>, constraints: CaseConstraints): number | null {
+  const offset = minuteOfDay(list.startsAt, list.zone)
+  const waits = [
+    minuteOf(constraints.interpreterFrom),
+    constraints.needsAnaesthetist && list.anaesthetistFrom ? minuteOfDay(list.anaesthetistFrom, list.zone) : undefined,
+  ].flatMap(minute => minute === undefined || minute <= offset ? [] : [minute - offset])
+  return waits.length ? Math.max(...waits) : null
 }
 
 function minuteOfDay(instant: string, zone: string): number {

@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest'
 import { forecastDay, plannedSpans } from '#shared/domain/theatre/day-plan'
 import type { DayCase } from '#shared/domain/theatre/day-plan'
 import { lensReasons } from '#shared/domain/theatre/lens-check'
-import { breachesOf } from '#shared/domain/theatre/list-breaches'
+import { breachesOf, notBeforeMinute } from '#shared/domain/theatre/list-breaches'
 import type { BreachCase } from '#shared/domain/theatre/list-breaches'
 import { openStops, questionsOf, safetySteps } from '#shared/domain/theatre/safety-check'
 
@@ -33,6 +33,29 @@ describe('a theatre day', () => {
     const forecast = forecastDay({ ...list, cases: [planned('a'), underWay] }, '2026-10-15T08:30:00.000Z')!
     expect(forecast.cases.map(one => one.id)).toEqual(['b', 'a'])
     expect(forecast.cases[0]!.expectedFinishMinute).toBeGreaterThan(60)
+  })
+})
+
+describe('the order of a list', () => {
+  // 07:30 UTC is 08:30 in London; an interpreter from 10:00 is 90 minutes into the list.
+  it('changes the finish and the chance of overrun where somebody has to be waited for', () => {
+    const waits = { ...planned('w'), notBeforeMinute: notBeforeMinute({ startsAt: list.startsAt, zone: 'Europe/London', anaesthetistFrom: null }, { interpreterFrom: '10:00' }) }
+    expect(waits.notBeforeMinute).toBe(90)
+    const others = ['a', 'b', 'c', 'd', 'e'].map(id => planned(id))
+    const first = forecastDay({ ...list, cases: [waits, ...others] }, dayBefore)!
+    const later = forecastDay({ ...list, cases: [...others.slice(0, 3), waits, ...others.slice(3)] }, dayBefore)!
+    expect(first.cases[0]!.expectedStartMinute).toBe(90)
+    expect(first.expectedFinishMinute).toBeGreaterThan(later.expectedFinishMinute + 60)
+    expect(first.overrunProbability).toBeGreaterThan(later.overrunProbability + 0.3)
+  })
+
+  it('waits for the later of interpreter and anaesthetist, and for nobody who is there already', () => {
+    const at = (constraints: Parameters<typeof notBeforeMinute>[1], anaesthetistFrom: string | null = '2026-10-15T08:30:00.000Z') => notBeforeMinute({ startsAt: list.startsAt, zone: 'Europe/London', anaesthetistFrom }, constraints)
+    expect(at({ needsAnaesthetist: true })).toBe(60)
+    expect(at({ needsAnaesthetist: true, interpreterFrom: '10:00' })).toBe(90)
+    expect(at({ needsAnaesthetist: true }, null)).toBeNull()
+    expect(at({ interpreterFrom: '08:30' })).toBeNull()
+    expect(at({ diabetic: true })).toBeNull()
   })
 })
 
