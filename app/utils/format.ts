@@ -121,3 +121,10 @@ export function countOf(count: number, one: string, many = `${one}s`): string {
 export function capitalise(text: string): string {
   return text.charAt(0).toUpperCase() + text.slice(1)
 }
+
+/** The instant of a wall-clock time (`10:40`) on the site's day of `day`, as ISO text; `null` for a time that cannot be read. */
+export function momentOn(day: When, time: string, zone = siteZone): string | null {
+  const [, hours, minutes] = /^([01]?\d|2[0-3]):([0-5]\d)$/.exec(time.trim()) ?? []
+  if (hours === undefined || minutes === undefined) return null
+  return dayjs.tz(`${at(day, zone).format('YYYY-MM-DD')} ${hours.padStart(2, '0')}:${minutes}`, zone).toISOString()
+}

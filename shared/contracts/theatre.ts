@@ -97,6 +97,8 @@ const note = {
   lensPowerD: z.number().min(-20, 'Between −20 and +60 D.').max(60, 'Between −20 and +60 D.'),
   lensDeviationExplained: text(1000).default(''),
   drops: z.array(z.strictObject({ drug: text(120).min(2, 'Which drops?'), perDay: z.int().min(1).max(24), days: z.int().min(1).max(180) })).max(10),
+  /** Why drops are prescribed that an allergy of the record touches. */
+  allergyAnswer: text(500).default(''),
   dayOne: dayOneAnswers,
 }
 export const signNoteBody = z.strictObject(note)

@@ -13,6 +13,7 @@ import { finishCase, requireNoOpenStop } from '#server/services/theatre/finish-c
 import { needDayOne } from '#server/services/theatre/need-day-one'
 import type { AmendNoteBody, SignNoteBody } from '#shared/contracts/theatre'
 import { DomainError } from '#shared/domain/errors'
+import { allergiesTouched } from '#shared/domain/theatre/regimens'
 import { languages } from '#shared/domain/messaging/vocabulary'
 import { visitWords } from '#shared/domain/messaging/visit-words'
 import { liveVisitStates } from '#shared/domain/visit/vocabulary'
@@ -60,19 +61,26 @@ async function write(tx: Transaction, ctx: ServiceContext, loaded: LoadedPathway
   if (!lensAsPlanned && input.lensDeviationExplained.length < 3) {
     throw new DomainError('theatre.explanation-needed', 'The lens implanted is not the lens planned: say why.', { fields: [{ field: 'lensDeviationExplained', code: 'required', message: 'Say why another lens was implanted.' }], detail: { planned: plan ? { model: plan.model, powerD: plan.powerD } : null } })
   }
+  requireAllergyAnswer(loaded, input)
   // Worked out before this note joins the surgeon's own notes, which it is measured against.
   const need = await needDayOne(tx, loaded, input, ctx.actor.personId)
-  const { dayOne, operatedAt: _typed, lensDeviationExplained, ...stored } = withoutPathway(input)
+  const { dayOne, operatedAt: _typed, lensDeviationExplained, allergyAnswer, ...stored } = withoutPathway(input)
   const version = (last?.version ?? 0) + 1
   const [note] = await tx.insert(operationNotes).values({ ...stored, pathwayId: pathway.id, caseId: last?.caseId ?? live?.id ?? null, version, operatedAt, lensAsPlanned, lensDeviationExplained: lensDeviationExplained || null, signedBy: ctx.actor.personId, signedAt: ctx.now, amendReason: amendment?.reason ?? null }).returning()
   if (!note) throw new DomainError('theatre.conflict', 'The note could not be signed.')
   if (live) await finishCase(tx, live, operatedAt)
   const changed = await recordEvent(tx, ctx, loaded, {
     kind: amendment ? 'note-amended' : 'note-signed', words: amendment ? `Operation note amended: ${amendment.reason}` : 'Operation note signed', audit: amendment ? 'theatre.note-amended' : 'theatre.note-signed',
-    payload: { version }, detail: { noteId: note.id, dayOne }, change: { operatedAt, surgeryAt: operatedAt, dayOneNeed: need },
+    payload: { version }, detail: { noteId: note.id, dayOne, ...(allergyAnswer ? { allergyAnswer } : {}) }, change: { operatedAt, surgeryAt: operatedAt, dayOneNeed: need },
   })
   if (!amendment) await queueAfterSurgery(tx, ctx, { ...loaded, pathway: changed }, operatedAt)
   return { note, siteId: pathway.siteId }
+}
+
+/** Drops that an allergy of the record touches are prescribed only with an answer. */
+function requireAllergyAnswer({ patient }: LoadedPathway, { drops, allergyAnswer }: SignNoteBody): void {
+  const touched = allergiesTouched(drops, patient.alerts.filter(alert => alert.kind === 'allergy').map(alert => alert.words))
+  if (touched.length && allergyAnswer.length < 3) throw new DomainError('theatre.explanation-needed', 'A recorded allergy touches these drops: choose others, or say why.', { fields: [{ field: 'allergyAnswer', code: 'required', message: 'Say why these drops are prescribed in spite of the allergy.' }], detail: { touched } })
 }
 
 /** The id of the address is no field of the note. */
