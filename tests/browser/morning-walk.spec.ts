@@ -42,7 +42,7 @@ async function expectAccessible(page: Page): Promise<void> {
 test('a nurse marks arrived, an optometrist signs cells 3+ with pain, the surgeon’s open page shows it within two seconds and closes it', async () => {
   const surgeon = await openAs('tobias.quillfeather')
   await surgeon.goto(`${product.url}/escalations`, { waitUntil: 'load' })
-  await surgeon.getByText('Nothing is waiting for you').waitFor()
+  await surgeon.getByText('wait for an answer').waitFor()
   await surgeon.waitForTimeout(1_000)
 
   const nurse = await openAs('maren.oxlade')
@@ -51,7 +51,7 @@ test('a nurse marks arrived, an optometrist signs cells 3+ with pain, the surgeo
   await nurse.getByRole('button', { name: 'Send in' }).first().waitFor()
 
   const optometrist = await openAs('ivo.hartnell')
-  await optometrist.getByRole('link', { name: 'Hesper Dunmallow' }).first().click()
+  await optometrist.getByRole('link', { name: 'Theodora Quist' }).first().click()
   await optometrist.getByRole('heading', { name: 'Vision' }).waitFor()
   await optometrist.waitForTimeout(500)
   await optometrist.getByRole('button', { name: '6/9' }).first().click()
@@ -69,17 +69,18 @@ test('a nurse marks arrived, an optometrist signs cells 3+ with pain, the surgeo
   await sign.waitFor()
   await expectAccessible(optometrist)
   await sign.click()
-  await surgeon.getByText('waits for an answer').waitFor({ timeout: 4_000 })
+  await surgeon.getByText('Theodora Quist').waitFor({ timeout: 4_000 })
   await optometrist.getByText('is raised', { exact: false }).waitFor()
   await expect.poll(() => product.fakes.store.texts.some(text => text.to === '+447700900103'), { timeout: 10_000 }).toBe(true)
 
   await surgeon.getByRole('button', { name: 'I am ringing now' }).click()
+  await surgeon.getByRole('button', { name: 'Open Theodora Quist, right eye' }).or(surgeon.getByRole('button', { name: 'Open Theodora Quist, left eye' })).click()
   await surgeon.getByText('has it: I am ringing now').waitFor()
   await surgeon.getByLabel('What was done').fill('Seen at once, treated, recheck tomorrow.')
   await surgeon.getByRole('button', { name: 'Close with this' }).click()
-  await surgeon.getByText('Nothing is waiting for you').waitFor()
+  await surgeon.getByText('Theodora Quist').waitFor({ state: 'detached' })
 
-  const { rows } = await product.pool.query('select p.id, p.patient_id from pathways p join patients t on t.id = p.patient_id where t.name = \'Hesper Dunmallow\'')
+  const { rows } = await product.pool.query('select p.id, p.patient_id from pathways p join patients t on t.id = p.patient_id where t.name = \'Theodora Quist\'')
   await nurse.goto(`${product.url}/patient/${rows[0].patient_id}`, { waitUntil: 'networkidle' })
   await expectAccessible(nurse)
   await nurse.getByRole('link', { name: 'Book the next visit' }).first().click()

@@ -1,7 +1,7 @@
 import { eq } from 'drizzle-orm'
 import type { Transaction } from '#server/db/client'
 import { lensLabels, patients, pathways, riskAssessments, theatreCases, theatreLists } from '#server/db/schema/index'
-import type { ScenarioTimes } from '#server/db/seed/seed-scenario'
+import type { ScenarioTimes } from '#server/db/seed/seed-times'
 import { seedId } from '#server/db/seed/seed-id'
 import { withCheckDigit } from '#shared/domain/theatre/gs1'
 import { assessRisk } from '#shared/domain/theatre/risk'

@@ -11,8 +11,8 @@ const dayMs = 86_400_000
 /** Sites, one community practice, the demo people with their roles, and a rota with one gap. */
 export async function seedUnit(tx: Transaction, today: Date): Promise<void> {
   await tx.insert(sites).values([
-    { id: seedId('site:ferncombe'), code: 'ferncombe', name: 'Ferncombe Eye Unit', zone, phone: '01632 960140', emergencyPhone: '01632 960141', address: 'Ferncombe Eye Unit, Orchard Rise, Ferncombe', directions: 'Level 1, follow the yellow line from the main entrance. Blue badge places are by the north door.', isHospital: true, settings: { identifierCheck: 'nhs-number' } },
-    { id: seedId('site:tidemill'), code: 'tidemill', name: 'Tidemill Outreach Clinic', zone, phone: '01632 960150', emergencyPhone: '01632 960141', address: 'Tidemill Health Centre, Quay Street, Tidemill', directions: 'Ground floor, second door on the left. The bus stops outside.', isHospital: false, settings: { identifierCheck: 'nhs-number' } },
+    { id: seedId('site:ferncombe'), code: 'ferncombe', name: 'Ferncombe Eye Unit', zone, phone: '01632 960140', emergencyPhone: '01632 960141', address: 'Ferncombe Eye Unit, Orchard Rise, Ferncombe', directions: 'Level 1, follow the yellow line from the main entrance. Blue badge places are by the north door.', isHospital: true, settings: { identifierCheck: 'nhs-number', travelMinutes: { [seedId('site:tidemill')]: 25 } } },
+    { id: seedId('site:tidemill'), code: 'tidemill', name: 'Tidemill Outreach Clinic', zone, phone: '01632 960150', emergencyPhone: '01632 960141', address: 'Tidemill Health Centre, Quay Street, Tidemill', directions: 'Ground floor, second door on the left. The bus stops outside.', isHospital: false, settings: { identifierCheck: 'nhs-number', travelMinutes: { [seedId('site:ferncombe')]: 25 } } },
   ])
   await tx.insert(practices).values({ id: seedId('practice:harbour-lane'), name: 'Harbour Lane Opticians', phone: '01632 960160', address: '4 Harbour Lane, Tidemill' })
 

@@ -41,8 +41,8 @@ test('a change without our header or from a foreign page is refused', async () =
 
 test('signing cells 3+ with pain 4 raises one escalation of urgency Now and alerts the rota at once', async () => {
   const optometrist = await signedIn(product, 'ivo.hartnell')
-  const day = await optometrist<{ visits: { id: string, kind: string }[] }>('/api/visit/clinic')
-  const visit = day.body.visits.find(each => each.kind === 'day-one')
+  const day = await optometrist<{ visits: { id: string, kind: string, state: string }[] }>('/api/visit/clinic')
+  const visit = day.body.visits.find(each => each.kind === 'day-one' && each.state === 'arrived')
   const findings = { painScore: 4, acuityUnaided: { logMar: 0.3, entered: '6/12' }, iopMmHg: 16, oedemaGrade: 1, cells: '3+', flare: '2+', chamberDepth: 'deep', wound: 'sealed', lensPosition: 'centred' }
   const half = await optometrist(`/api/review/${visit?.id}/sign`, { body: { findings: { painScore: 4 } } })
   expect(half.status).toBe(422)
@@ -54,8 +54,8 @@ test('signing cells 3+ with pain 4 raises one escalation of urgency Now and aler
   await expect.poll(() => product.fakes.store.texts.filter(text => text.to === '+447700900103').length, { timeout: 10_000 }).toBe(1)
 
   const surgeon = await signedIn(product, 'tobias.quillfeather')
-  const list = await surgeon<{ items: { id: string, rowVersion: number, urgency: string }[] }>('/api/escalation')
-  const [first] = list.body.items
+  const list = await surgeon<{ items: { id: string, number: number, rowVersion: number, urgency: string }[] }>('/api/escalation')
+  const first = list.body.items.find(each => each.number === signed.body.escalation.number)
   expect(first?.urgency).toBe('now')
   const refusedClose = await surgeon(`/api/escalation/${first?.id}/close`, { body: { words: 'Seen.', rowVersion: first?.rowVersion } })
   expect(refusedClose.status).toBe(409)
