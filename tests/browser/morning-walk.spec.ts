@@ -69,7 +69,7 @@ test('a nurse marks arrived, an optometrist signs cells 3+ with pain, the surgeo
   await sign.waitFor()
   await expectAccessible(optometrist)
   await sign.click()
-  await surgeon.getByText('Theodora Quist').waitFor({ timeout: 4_000 })
+  await surgeon.getByRole('link', { name: 'Theodora Quist' }).waitFor({ timeout: 4_000 })
   await optometrist.getByText('is raised', { exact: false }).waitFor()
   await expect.poll(() => product.fakes.store.texts.some(text => text.to === '+447700900103'), { timeout: 10_000 }).toBe(true)
 
@@ -78,7 +78,7 @@ test('a nurse marks arrived, an optometrist signs cells 3+ with pain, the surgeo
   await surgeon.getByText('has it: I am ringing now').waitFor()
   await surgeon.getByLabel('What was done').fill('Seen at once, treated, recheck tomorrow.')
   await surgeon.getByRole('button', { name: 'Close with this' }).click()
-  await surgeon.getByText('Theodora Quist').waitFor({ state: 'detached' })
+  await surgeon.getByRole('link', { name: 'Theodora Quist' }).waitFor({ state: 'detached' })
 
   const { rows } = await product.pool.query('select p.id, p.patient_id from pathways p join patients t on t.id = p.patient_id where t.name = \'Theodora Quist\'')
   await nurse.goto(`${product.url}/patient/${rows[0].patient_id}`, { waitUntil: 'networkidle' })
