@@ -17,6 +17,11 @@ export const pathwayActs = {
   recordFirstCheck: ['nurse', 'optometrist', 'surgeon', 'clinical-lead'],
   decideFellowEye: ['optometrist', 'surgeon', 'clinical-lead'],
   sendLetter: ['coordinator', 'surgeon', 'clinical-lead'],
+  /** The queue of referrals that wait for a decision. */
+  seeTriage: ['coordinator', 'surgeon', 'clinical-lead'],
+  importReferrals: ['coordinator', 'clinical-lead'],
+  mergePatients: ['coordinator', 'surgeon', 'clinical-lead'],
+  addAttachment: ['coordinator', 'nurse', 'optometrist', 'surgeon', 'clinical-lead'],
   addReferral: ['coordinator', 'nurse', 'surgeon', 'clinical-lead'],
   changeReferral: ['coordinator', 'nurse', 'optometrist', 'surgeon', 'clinical-lead'],
   changeContacts: ['coordinator', 'nurse', 'optometrist', 'surgeon', 'clinical-lead'],

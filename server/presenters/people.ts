@@ -6,6 +6,7 @@ import type { RoleName } from '#shared/domain/people/vocabulary'
 const everyLink: { label: string, to: string, key: string, roles: readonly RoleName[] }[] = [
   { label: 'Today', to: '/', key: 't', roles: ['coordinator', 'nurse', 'optometrist', 'surgeon', 'clinical-lead', 'administrator'] },
   { label: 'Pathways', to: '/pathways', key: 'p', roles: ['coordinator', 'nurse', 'optometrist', 'surgeon', 'clinical-lead'] },
+  { label: 'Referrals', to: '/triage', key: 'r', roles: ['coordinator', 'surgeon', 'clinical-lead'] },
   { label: 'Clinics', to: '/clinic', key: 'c', roles: ['coordinator', 'nurse', 'optometrist', 'surgeon', 'clinical-lead'] },
   { label: 'Theatre', to: '/theatre', key: 'h', roles: ['coordinator', 'nurse', 'surgeon', 'clinical-lead'] },
   { label: 'Escalations', to: '/escalations', key: 'e', roles: ['nurse', 'optometrist', 'surgeon', 'clinical-lead'] },

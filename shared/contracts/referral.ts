@@ -9,6 +9,8 @@ export const triageBody = z.strictObject({
   note: z.string().trim().max(1000).default(''),
   redFlags: redFlagsSchema,
   priority: z.enum(['routine', 'soon', 'urgent']).optional(),
+  /** The other eye of the same person, waiting too: decided in the same act. */
+  fellow: z.strictObject({ pathwayId: z.uuid(), rowVersion }).optional(),
   rowVersion,
 })
 export type TriageBody = z.output<typeof triageBody>
@@ -23,3 +25,10 @@ export const referralBody = z.strictObject({
   rowVersion,
 })
 export type ReferralBody = z.output<typeof referralBody>
+
+/** The last row of the page before: when it was referred, and its id. */
+export const triageQuery = z.object({
+  after: z.string().regex(/^\d{4}-\d{2}-\d{2}T\d{2}:\d{2}:\d{2}(\.\d{1,6})?Z_[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/, 'Not a page mark.').optional(),
+  siteId: z.uuid().optional(),
+})
+export type TriageQuery = z.output<typeof triageQuery>
