@@ -33,7 +33,8 @@ export default defineNuxtConfig({
   security: {
     strict: false,
     rateLimiter: false,
-    requestSizeLimiter: { maxRequestSizeInBytes: 2_000_000, maxUploadFileRequestInBytes: 21_000_000, throwError: false },
+    // server/middleware/1.guard.ts refuses by size, in problem JSON and with the status of a refusal.
+    requestSizeLimiter: false,
     xssValidator: false,
     corsHandler: false,
     csrf: false,

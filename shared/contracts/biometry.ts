@@ -14,6 +14,8 @@ export const recordBiometryBody = z.strictObject({
   endothelialCellsPerMm2: number.min(0).max(6000, 'Between 0 and 6000 cells per mm².').optional(),
   preoperativeAcuity: z.string().trim().max(30).optional(),
   preoperativeIopMmHg: number.min(0).max(80, 'Between 0 and 80 mmHg.').optional(),
+  /** Typed, or proposed by a device's file and looked at. */
+  source: z.enum(['typed', 'dicom']).default('typed'),
   /** The version that the caller saw; 0 for the first. */
   baseVersion: z.int().min(0),
 })

@@ -64,3 +64,15 @@ export const addPatientBody = z.strictObject({
 }).refine(body => (body.patient === undefined) !== (body.patientId === undefined), { message: 'Name a patient who is here, or describe a new one.', path: ['patient'] })
 export type AddPatientBody = z.output<typeof addPatientBody>
 export type AddPatientInput = z.input<typeof addPatientBody>
+
+const reason = text(500).min(3, 'Say in a few words how you know.')
+export const mergeBody = z.strictObject({
+  /** The record that ends: everything of it goes to the record in the address. */
+  mergedId: z.uuid(),
+  reason,
+  keptRowVersion: z.int().positive(),
+  mergedRowVersion: z.int().positive(),
+})
+export type MergeBody = z.output<typeof mergeBody>
+export const unmergeBody = z.strictObject({ reason })
+export type UnmergeBody = z.output<typeof unmergeBody>

@@ -40,7 +40,8 @@ export async function createTestDatabase() {
   }
 }
 
-export interface Product { url: string, fakes: RunningFakes, pool: pg.Pool, stop: () => Promise<void>, end: () => Promise<number | null>, log: () => string }
+/** `pid` is the served process: a test may look at its memory, or end it in the middle of something. */
+export interface Product { pid: number, url: string, fakes: RunningFakes, pool: pg.Pool, stop: () => Promise<void>, end: () => Promise<number | null>, log: () => string }
 
 /** The built product on a port of its own, with its own database and its own fakes. */
 export async function startProduct(): Promise<Product> {
@@ -76,7 +77,7 @@ export async function startProduct(): Promise<Product> {
     child.once('exit', code => resolve(code))
     child.kill('SIGTERM')
   })
-  return { url, fakes, pool: database.pool, stop, end, log: () => said }
+  return { pid: child.pid ?? 0, url, fakes, pool: database.pool, stop, end, log: () => said }
 }
 
 /** Signs in and answers a caller that carries the session. */

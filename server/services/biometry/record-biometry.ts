@@ -46,7 +46,7 @@ async function insertVersion(tx: Transaction, ctx: ServiceContext, loaded: Loade
   if (report.verdict === 'refuse') throw new DomainError('biometry.invalid', 'Some values cannot be this eye’s.', { fields: report.findings.flatMap(each => each.problems ?? []).map(each => ({ ...each, field: `eye.${each.field}` })) })
   const acuity = input.preoperativeAcuity ? parseAcuity(input.preoperativeAcuity) : undefined
   const [biometry] = await tx.insert(biometries).values({
-    pathwayId: pathway.id, version: input.baseVersion + 1, ...measureColumns(input.eye), cctUm: input.cctUm, endothelialCellsPerMm2: input.endothelialCellsPerMm2,
+    pathwayId: pathway.id, version: input.baseVersion + 1, source: input.source, ...measureColumns(input.eye), cctUm: input.cctUm, endothelialCellsPerMm2: input.endothelialCellsPerMm2,
     preoperativeLogMar: acuity?.logMar, preoperativeAcuityEntered: acuity?.entered, preoperativeIopMmHg: input.preoperativeIopMmHg,
     warnings: report.warnings.map(({ ruleId, sentence }) => ({ ruleId, sentence })), measuredBy: ctx.actor.personId, measuredAt: ctx.now,
   }).returning()

@@ -1,0 +1,17 @@
+import { Readable } from 'node:stream'
+import { getRequestHeader } from 'h3'
+import { presentImport } from '#server/presenters/referral-import'
+import { checkImport, importLimits } from '#server/services/referral/check-import'
+import { defineStaffApi } from '#server/utils/api'
+import { bodyParts, readUpload, safeName } from '#server/utils/upload'
+import { importQuery } from '#shared/contracts/referral-import'
+import { DomainError } from '#shared/domain/errors'
+
+/** A file of referrals, looked at and not yet taken over. `text/csv` flows through; a form's file is read first. */
+export default defineStaffApi({ query: importQuery }, async ({ ctx, query, event }) => {
+  const type = getRequestHeader(event, 'content-type') ?? ''
+  if (!/^(text\/csv|multipart\/form-data)/.test(type)) throw new DomainError('request.wrong-type', 'Send the file as text/csv, or in a form.')
+  const upload = type.startsWith('multipart/') ? await readUpload(event, importLimits.bytes) : undefined
+  const file = await checkImport(ctx, { siteId: query.siteId, fileName: upload?.name ?? safeName(getRequestHeader(event, 'x-file-name')), bytes: upload ? Readable.from([upload.bytes]) : bodyParts(event) })
+  return file ? presentImport({ file, siteName: '', personName: ctx.actor.name, isStalled: false }) : null
+})
