@@ -1,6 +1,7 @@
 import { may, pathwayActs } from '#server/policies/pathway'
 import { sitesWithRole } from '#server/policies/scope'
 import { presentReferral } from '#server/presenters/referral'
+import type { AlikeOf } from '#server/services/referral/find-alike-of'
 import type { TriageList } from '#server/services/referral/list-triage'
 import type { Actor } from '#shared/domain/people/vocabulary'
 
@@ -31,3 +32,11 @@ function presentWaiting({ pathway, patient, referral, clock, ...row }: TriageLis
     abilities: { canTriage: may(actor, 'triage', pathway.siteId) && pathway.state === 'open', canMerge: may(actor, 'mergePatients', pathway.siteId) },
   }
 }
+
+export function presentAlike({ patient, alike }: AlikeOf) {
+  return {
+    patient: { id: patient.id, rowVersion: patient.rowVersion },
+    alike: alike.map(each => ({ id: each.patient.id, name: each.patient.name, recordNumber: each.patient.recordNumber, rowVersion: each.patient.rowVersion, why: each.why, eyes: each.eyes.map(({ eye, operatedAt }) => ({ eye, operatedAt: operatedAt?.toISOString() ?? null })) })),
+  }
+}
+export type AlikeView = ReturnType<typeof presentAlike>
