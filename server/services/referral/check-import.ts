@@ -1,4 +1,4 @@
-import { Readable } from 'node:stream'
+import { pipeline, Readable } from 'node:stream'
 import { parse } from 'csv-parse'
 import { eq } from 'drizzle-orm'
 import { referralImportRows, referralImports, sites } from '#server/db/schema/index'
@@ -49,7 +49,9 @@ export async function checkImport(ctx: ServiceContext, file: ImportFile) {
 }
 
 async function readAll(ctx: ServiceContext, file: ImportFile, progress: Progress): Promise<void> {
-  const parser = Readable.from(decoded(file.bytes)).pipe(parse({ bom: true, columns: readHeader, info: true, trim: true, skip_empty_lines: true, relax_column_count: true, max_record_size: importLimits.lineCharacters }))
+  const parser = parse({ bom: true, columns: readHeader, info: true, trim: true, skip_empty_lines: true, relax_column_count: true, max_record_size: importLimits.lineCharacters })
+  // A fault of the source ends the parser with it, and so reaches the loop below; nothing is left to do here.
+  pipeline(Readable.from(decoded(file.bytes)), parser, () => undefined)
   let batch: Numbered[] = []
   for await (const { record, info } of parser as AsyncIterable<{ record: Record<string, string | undefined>, info: { lines: number, error?: { code: string } } }>) {
     if (++progress.rows > importLimits.rows) throw new DomainError('referral.too-large', `A file may hold ${importLimits.rows} referrals. Split it.`)
