@@ -6,13 +6,13 @@ import type { TriageList } from '#server/services/referral/list-triage'
 import type { Actor } from '#shared/domain/people/vocabulary'
 
 export function presentTriage({ counts, sites, rows }: TriageList, pageSize: number, actor: Actor, now: Date) {
-  const last = rows.length === pageSize ? rows.at(-1)?.pathway : undefined
+  const last = rows.length === pageSize ? rows.at(-1) : undefined
   const importSites = sitesWithRole(actor, ...pathwayActs.importReferrals)
   return {
     now: now.toISOString(),
     counts: { all: counts.all, incomplete: counts.incomplete, couldPass: counts.couldPass, passed: counts.passed },
     sites: sites.map(site => ({ id: site.id, name: site.name, waitTargetWeeks: site.waitTargetWeeks, weeksToSurgery: site.weeksToSurgery, measured: site.measured })),
-    next: last ? `${last.referredAt.toISOString()}_${last.id}` : null,
+    next: last ? `${last.mark}_${last.pathway.id}` : null,
     items: rows.map(row => presentWaiting(row, actor)),
     abilities: { canImport: importSites.length > 0 },
   }

@@ -72,7 +72,7 @@ test('a surgeon answers the warning signs, accepts the longest wait, and the que
   await page.waitForLoadState('networkidle')
   const first = await page.getByRole('heading', { level: 2 }).first().innerText()
   await expectAccessible(page)
-  await page.getByRole('button', { name: 'Accept', exact: true }).click()
+  await page.getByRole('button', { name: 'Save the decision' }).click()
   await page.getByRole('alert').getByText('Choose a decision.').waitFor()
   await page.getByRole('radio', { name: 'Accept for biometry' }).check({ force: true })
   await page.getByRole('button', { name: 'Accept', exact: true }).click()

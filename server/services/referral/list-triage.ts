@@ -58,6 +58,8 @@ function page(ctx: ServiceContext, waits: SQL | undefined, after: string | undef
   const [at, id] = after?.split('_') ?? []
   return ctx.db.select({
     pathway: pathways, referral: referrals, patient: patients, siteName: sites.name, sitePhone: sites.phone, zone: sites.zone,
+    /** To the microsecond, as the database has it: a mark of milliseconds would repeat rows. */
+    mark: sql<string>`to_char(${pathways.referredAt} at time zone 'UTC', 'YYYY-MM-DD"T"HH24:MI:SS.US"Z"')`,
     lacks: { 'red-flags': lacks['red-flags'], 'telephone': lacks.telephone, 'message-consent': lacks['message-consent'] },
     fellow: { pathwayId: fellow.id, rowVersion: fellowReferral.rowVersion },
     attachmentCount: sql<number>`(select count(*)::int from ${attachments} where ${attachments.pathwayId} = ${pathways.id})`,

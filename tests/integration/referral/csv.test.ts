@@ -77,7 +77,7 @@ test('what is no file of referrals is refused with its reason', async () => {
 
 test('what a spreadsheet would run is led by an apostrophe in the file of what was left behind', async () => {
   const name = '=HYPERLINK("http://x.example") Smith'
-  const sent = await send(file(csvLineOf(200, { name }), csvLineOf(201, { name })))
+  const sent = await send(file(csvLineOf(200, { name }), csvLineOf(201, { name, birth_date: csvLineOf(200).split(',')[1] ?? '' })))
   const answer = await (await fileSender(product, 'corin.vellacott'))(`/api/referral/import/${sent.body.id}/errors`)
   expect(answer.headers.get('content-disposition')).toContain('attachment')
   expect(answer.bytes.toString()).toContain('"\'=HYPERLINK(""http://x.example"") Smith"')
