@@ -1,17 +1,18 @@
 import { and, asc, desc, eq, gte, inArray, ne } from 'drizzle-orm'
 import type { Queryable } from '#server/db/client'
 import { escalations, inboundTexts, messageEvents, messages, pathways, patients, sites, visits } from '#server/db/schema/index'
+import { replySites } from '#server/policies/messaging'
 import { pathwaysInScope } from '#server/services/pathway/pathway-scope'
 import type { ServiceContext } from '#server/services/context'
 import { DomainError } from '#shared/domain/errors'
 import type { Actor } from '#shared/domain/people/vocabulary'
 
-/** The patient, if one of their pathways is the caller's to read. */
+/** The patient, if the caller works at the site of one of their pathways. A practice sees one shared eye, not what a patient writes to the unit. */
 export async function loadCorrespondent(db: Queryable, actor: Actor, patientId: string) {
   const [row] = await db.select({ patient: patients, pathway: pathways, site: sites }).from(patients)
     .innerJoin(pathways, eq(pathways.patientId, patients.id)).innerJoin(sites, eq(sites.id, pathways.siteId))
     .where(and(eq(patients.id, patientId), pathwaysInScope(actor))).orderBy(desc(pathways.stageSince)).limit(1)
-  if (!row) throw new DomainError('messaging.not-found', 'There is no such patient.')
+  if (!row || !replySites(actor).includes(row.site.id)) throw new DomainError('messaging.not-found', 'There is no such patient.')
   return row
 }
 

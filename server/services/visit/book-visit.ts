@@ -45,6 +45,8 @@ export async function bookInTransaction(ctx: ServiceContext, tx: Transaction, in
     .for('share', { of: pathways })
   if (!row) throw new DomainError('pathway.not-found', 'There is no such pathway.')
   if (row.pathway.state === 'closed') throw new DomainError('pathway.closed', 'This pathway is closed. Nothing can be booked for it.')
+  // Before any place is looked at: who may not book learns nothing about which places are free.
+  if (!mayBook(ctx.actor, row.pathway.siteId)) throw new DomainError('visit.not-allowed', 'You may not book for this site.')
   const place = await lockPlace(tx, input)
   if (!mayBook(ctx.actor, place.siteId)) throw new DomainError('visit.not-allowed', 'You may not book at this site.')
   if (place.startsAt <= ctx.now) throw new DomainError('visit.place-past', 'That time has passed. Choose a later one.', { fields: [{ field: 'placeId', code: 'past', message: 'That time has passed.' }] })
