@@ -44,7 +44,7 @@ export async function createTestDatabase() {
 export interface Product { pid: number, url: string, fakes: RunningFakes, pool: pg.Pool, stop: () => Promise<void>, end: () => Promise<number | null>, log: () => string }
 
 /** The built product on a port of its own, with its own database and its own fakes. */
-export async function startProduct(): Promise<Product> {
+export async function startProduct(settings: Record<string, string> = {}): Promise<Product> {
   const database = await createTestDatabase()
   const port = await freePort()
   const url = `http://127.0.0.1:${port}`
@@ -52,7 +52,7 @@ export async function startProduct(): Promise<Product> {
   const token = randomBytes(16).toString('hex')
   const fakes = await startFakes({ textPort: 0, mailPort: 0, controlPort: 0, origin: url, account, token })
   const child: ChildProcess = spawn(process.execPath, ['.output/server/index.mjs'], {
-    env: { ...process.env, DATABASE_URL: database.appUrl, HOST: '127.0.0.1', PORT: String(port), NITRO_PORT: String(port), DAWNWARD_DEMO: '1', DAWNWARD_ORIGIN: url, NUXT_SESSION_PASSWORD: randomBytes(32).toString('base64url'), DAWNWARD_TEXT_ACCOUNT: account, DAWNWARD_TEXT_TOKEN: token, DAWNWARD_TEXT_HOST: fakes.textUrl, DAWNWARD_MAIL_URL: fakes.mailUrl, DAWNWARD_FAKES_URL: fakes.controlUrl, DAWNWARD_RATE_SCALE: '50' },
+    env: { ...process.env, DATABASE_URL: database.appUrl, HOST: '127.0.0.1', PORT: String(port), NITRO_PORT: String(port), DAWNWARD_DEMO: '1', DAWNWARD_ORIGIN: url, NUXT_SESSION_PASSWORD: randomBytes(32).toString('base64url'), DAWNWARD_TEXT_ACCOUNT: account, DAWNWARD_TEXT_TOKEN: token, DAWNWARD_TEXT_HOST: fakes.textUrl, DAWNWARD_MAIL_URL: fakes.mailUrl, DAWNWARD_FAKES_URL: fakes.controlUrl, DAWNWARD_RATE_SCALE: '50', ...settings },
     stdio: ['ignore', 'pipe', 'pipe'],
   })
   let said = ''
