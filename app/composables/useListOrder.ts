@@ -1,7 +1,7 @@
 import type { MaybeRefOrGetter } from 'vue'
 import type { DayCaseView, DayListView } from '#server/presenters/theatre'
 import { forecastDay, isOver, plannedSpans } from '#shared/domain/theatre/day-plan'
-import { breachesOf } from '#shared/domain/theatre/list-breaches'
+import { breachesOf, proposeOrder } from '#shared/domain/theatre/list-breaches'
 
 const ids = (cases: readonly { id: string }[]) => cases.map(one => one.id)
 
@@ -28,7 +28,10 @@ export function useListOrder(list: MaybeRefOrGetter<DayListView>, zone: MaybeRef
   const forecastOf = (some: readonly DayCaseView[]) => forecastDay({ ...toValue(list), cases: some }, toValue(now))
   const forecast = computed(() => forecastOf(cases.value))
   const savedForecast = computed(() => isTrying.value ? forecastOf(savedCases.value) : forecast.value)
-  const breaches = computed(() => breachesOf({ ...toValue(list), zone: toValue(zone), cases: cases.value.map(one => ({ ...one, patientName: one.patient.name })) }))
+  const asked = computed(() => ({ ...toValue(list), zone: toValue(zone), cases: cases.value.map(one => ({ ...one, patientName: one.patient.name })) }))
+  const breaches = computed(() => breachesOf(asked.value))
+  /** An order that keeps more of what the cases need, to be looked at and saved or left. */
+  const proposal = computed(() => breaches.value.length ? proposeOrder(asked.value) : null)
 
   function move(id: string, to: number): boolean {
     const from = order.value.indexOf(id)
@@ -38,6 +41,11 @@ export function useListOrder(list: MaybeRefOrGetter<DayListView>, zone: MaybeRef
     next.splice(to, 0, id)
     tried.value = next
     return true
+  }
+  function takeProposal() {
+    if (!proposal.value) return
+    if (!tried.value) base.value = toValue(list).rowVersion
+    tried.value = [...proposal.value]
   }
   function putBack() {
     tried.value = null
@@ -56,5 +64,5 @@ export function useListOrder(list: MaybeRefOrGetter<DayListView>, zone: MaybeRef
       return { id: one.id, plannedStartMinute: span.startMinute, expectedStartMinute: one.startedAt ? null : expected?.expectedStartMinute ?? null, from, to, slowTo: isOver(one) ? null : expected?.slowFinishMinute ?? null }
     })
   })
-  return { cases, order, isTrying, base, forecast, savedForecast, breaches, spans, move, putBack }
+  return { cases, order, isTrying, base, forecast, savedForecast, breaches, proposal, spans, move, takeProposal, putBack }
 }

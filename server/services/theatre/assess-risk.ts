@@ -5,6 +5,7 @@ import { notifyLive } from '#server/services/audit/notify-live'
 import type { ServiceContext } from '#server/services/context'
 import { lockPathway, requireOpen } from '#server/services/pathway/load-pathway'
 import { recordEvent } from '#server/services/pathway/record-event'
+import { repredictCase } from '#server/services/theatre/repredict-case'
 import type { RiskBody } from '#shared/contracts/theatre'
 import { DomainError } from '#shared/domain/errors'
 import { assessRisk as workOut } from '#shared/domain/theatre/risk'
@@ -33,6 +34,7 @@ export async function assessRisk(ctx: ServiceContext, input: RiskBody & { pathwa
       await recordEvent(tx, ctx, loaded, { kind: 'risk-assessed', words: 'Risk assessed', audit: 'theatre.risk-assessed', payload: { version: risk.version } })
       return { risk, siteId: loaded.pathway.siteId }
     })
+    await repredictCase(ctx, input.pathwayId)
     await notifyLive(ctx.db, 'pathway', done.siteId, [input.pathwayId])
     return done.risk
   }

@@ -34,3 +34,24 @@ function minuteOfDay(instant: string, zone: string): number {
   const { hour, minute } = Temporal.Instant.from(instant).toZonedDateTimeISO(zone)
   return hour * 60 + minute
 }
+
+/**
+ * The waiting cases in an order that breaks less: latex allergy, then diabetes, then the others as they stand, and who has to be waited
+ * for moved back to the first place at which nobody waits. `null` when no such order is better. A proposal, never done by itself.
+ */
+export function proposeOrder(list: Omit<BreachList, 'cases'> & { cases: readonly (BreachCase & { notBeforeMinute: number | null })[] }): string[] | null {
+  const fixed = list.cases.filter(one => one.state !== 'planned')
+  const rank = ({ constraints }: BreachCase) => constraints.latexAllergy ? 0 : constraints.diabetic ? 1 : 2
+  const sorted = list.cases.filter(one => one.state === 'planned').map((one, index) => ({ one, index })).sort((left, right) => rank(left.one) - rank(right.one) || left.index - right.index).map(({ one }) => one)
+  const free = sorted.filter(one => one.notBeforeMinute === null)
+  const ordered = [...free]
+  for (const one of sorted.filter(each => each.notBeforeMinute !== null).sort((left, right) => left.notBeforeMinute! - right.notBeforeMinute!)) {
+    const place = Array.from({ length: ordered.length + 1 }, (_, index) => index).find((index) => {
+      const start = plannedSpans([...fixed, ...ordered.slice(0, index), one]).at(-1)!.startMinute
+      return start >= one.notBeforeMinute!
+    })
+    ordered.splice(place ?? ordered.length, 0, one)
+  }
+  const proposed = breachesOf({ ...list, cases: [...fixed, ...ordered] }).length
+  return proposed < breachesOf(list).length ? ordered.map(one => one.id) : null
+}

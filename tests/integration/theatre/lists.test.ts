@@ -62,6 +62,23 @@ test('a dense nucleus takes its time on the list and raises the chance that it o
   expect(after.forecast!.overrunProbability).toBeGreaterThan(before.forecast!.overrunProbability)
 })
 
+test('a dense nucleus found after the eye was listed makes its case longer, unless a person set the minutes', async () => {
+  const [eye, other] = takeWaiting(2)
+  const id = await makeList(11, [eye!, other!])
+  const before = await listOf(11, id)
+  const [first, second] = before.cases
+  expect((await coordinator(`/api/theatre/case/${second!.id}`, { method: 'PUT', body: { rowVersion: before.rowVersion, plannedMinutes: 40, constraints: {} } })).status).toBe(200)
+  const factors = { cataract: 'brunescent', locs: { opalescence: 5.6, colour: 5.8 } }
+  for (const pathwayId of [eye, other]) {
+    const risk = (await product.pool.query('select coalesce(max(version), 0)::int v from risk_assessments where pathway_id = $1', [pathwayId])).rows[0].v as number
+    expect((await surgeon(`/api/theatre/pathway/${pathwayId}/risk`, { body: { factors, baseVersion: risk } })).status).toBe(200)
+  }
+  const after = await listOf(11, id)
+  expect(after.cases[0]!.plannedMinutes).toBeGreaterThan(2 * first!.plannedMinutes)
+  expect(after.cases[1]!.plannedMinutes).toBe(40)
+  expect(new Date(after.cases[1]!.surgeryAt).getTime() - new Date(after.cases[0]!.surgeryAt).getTime()).toBe((after.cases[0]!.plannedMinutes + 10) * 60_000)
+})
+
 test('another order gives every patient their new time and a new reminder, and a stale one answers with the order in the record', async () => {
   const id = await makeList(12, takeWaiting(3))
   const list = await listOf(12, id)

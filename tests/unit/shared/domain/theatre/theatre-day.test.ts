@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest'
 import { forecastDay, plannedSpans } from '#shared/domain/theatre/day-plan'
 import type { DayCase } from '#shared/domain/theatre/day-plan'
 import { lensReasons } from '#shared/domain/theatre/lens-check'
-import { breachesOf, notBeforeMinute } from '#shared/domain/theatre/list-breaches'
+import { breachesOf, notBeforeMinute, proposeOrder } from '#shared/domain/theatre/list-breaches'
 import type { BreachCase } from '#shared/domain/theatre/list-breaches'
 import { openStops, questionsOf, safetySteps } from '#shared/domain/theatre/safety-check'
 
@@ -85,6 +85,26 @@ describe('what a case needs of its place', () => {
 
   it('is not asked of a case that is over', () => {
     expect(kinds([one('c', {}), { ...one('a', { diabetic: true }), state: 'done' }])).toEqual([])
+  })
+})
+
+describe('a proposed order', () => {
+  const one = (id: string, constraints: BreachCase['constraints'] = {}) => ({ id, patientName: id, eye: 'right' as const, constraints, plannedMinutes: 25, state: 'planned' as const, endedAt: null, notBeforeMinute: notBeforeMinute({ startsAt: list.startsAt, zone: 'Europe/London', anaesthetistFrom: null }, constraints) })
+  const propose = (cases: ReturnType<typeof one>[]) => proposeOrder({ startsAt: list.startsAt, zone: 'Europe/London', anaesthetistFrom: null, anaesthetistTo: null, cases })
+
+  it('puts latex before diabetes before the others, and leaves the rest as it stands', () => {
+    expect(propose([one('a'), one('d', { diabetic: true }), one('b'), one('l', { latexAllergy: true })])).toEqual(['l', 'd', 'a', 'b'])
+  })
+
+  it('moves a case back to the first place at which its interpreter is there', () => {
+    // 25 minutes and 10 between: places begin at 08:30, 09:05, 09:40, 10:15.
+    expect(propose([one('w', { interpreterFrom: '09:30' }), one('a'), one('b'), one('c')])).toEqual(['a', 'b', 'w', 'c'])
+  })
+
+  it('is none where nothing is broken or no order helps, and moves nobody who is under way', () => {
+    expect(propose([one('d', { diabetic: true }), one('a')])).toBeNull()
+    expect(propose([one('a', { needsAnaesthetist: true })])).toBeNull()
+    expect(propose([{ ...one('a'), state: 'in-theatre' as never }, one('b'), one('d', { diabetic: true })])).toBeNull()
   })
 })
 
