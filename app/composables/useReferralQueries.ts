@@ -1,6 +1,7 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/vue-query'
 import type { MaybeRefOrGetter } from 'vue'
 import type { AttachmentsView } from '#server/presenters/attachment'
+import type { MergesView } from '#server/presenters/patient-merge'
 import type { ImportRowsPage, ImportsPage, ImportView } from '#server/presenters/referral-import'
 import type { AlikeView, TriagePage } from '#server/presenters/triage'
 import type { ReferralBody, TriageBody } from '#shared/contracts/referral'
@@ -27,6 +28,11 @@ export function useTriage(after: MaybeRefOrGetter<string | undefined>) {
 export function useAlike(pathwayId: MaybeRefOrGetter<string | undefined>) {
   const api = useApi()
   return useQuery({ queryKey: ['referral', 'alike', pathwayId] as const, queryFn: () => api<AlikeView>(`/api/referral/${toValue(pathwayId)}`), enabled: () => Boolean(toValue(pathwayId)) })
+}
+
+export function useMerges(patientId: MaybeRefOrGetter<string>) {
+  const api = useApi()
+  return useQuery({ queryKey: ['patient', 'merges', patientId] as const, queryFn: () => api<MergesView>(`/api/patient/${toValue(patientId)}/merges`) })
 }
 
 export interface Decision { id: string, decision: 'accepted' | 'returned' | 'declined', note: string, redFlags: Record<string, boolean>, priority: 'routine' | 'soon' | 'urgent', rowVersion: number, fellow?: { pathwayId: string, rowVersion: number } }

@@ -35,6 +35,10 @@ test('a merge moves everything of one record to the other, and taking it back re
   expect(await facts([kept.id, merged.id])).toMatchObject([{ identifier: testNhsNumber(900), phone: '+447700900111', merged_into_id: null }, { identifier: null, merged_into_id: kept.id }])
   expect((await coordinator(`/api/patient/${merged.id}`)).status).toBe(404)
 
+  const listed = await coordinator<{ merges: { id: string, recordNumber: string }[], abilities: { canUndo: boolean } }>(`/api/patient/${kept.id}/merges`)
+  expect(listed.body).toMatchObject({ merges: [{ id: done.body.mergeId, recordNumber: 'MA2' }], abilities: { canUndo: true } })
+  expect((await (await signedIn(product, 'sorrel.wincanton'))(`/api/patient/${kept.id}/merges`)).status).toBe(404)
+
   await expect(product.pool.query('update patient_merges set reason = \'another\'')).rejects.toThrow('never changed')
   await expect(product.pool.query('update symptom_checks set patient_id = patient_id')).rejects.toThrow('never changed')
   const undone = await coordinator(`/api/patient/merge/${done.body.mergeId}/undo`, { body: { reason: 'They are sisters' } })
