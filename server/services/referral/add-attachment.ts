@@ -56,7 +56,10 @@ export async function listAttachments(ctx: ServiceContext, pathwayId: string) {
 export async function openAttachment(ctx: ServiceContext, id: string) {
   const [found] = await ctx.db.select({ file: attachments, siteId: pathways.siteId }).from(attachments).innerJoin(pathways, eq(pathways.id, attachments.pathwayId)).where(and(eq(attachments.id, id), pathwaysInScope(ctx.actor)))
   if (!found) throw new DomainError('referral.not-found', 'There is no such file.')
-  const bytes = await useFiles().get(found.file.storedAs)
+  const bytes = await useFiles().get(found.file.storedAs).catch((error: NodeJS.ErrnoException) => {
+    if (error.code === 'ENOENT') throw new DomainError('referral.conflict', 'This file is not where it should be. Tell whoever runs the service.')
+    throw error
+  })
   if (createHash('sha256').update(bytes).digest('hex') !== found.file.sha256) throw new DomainError('referral.conflict', 'The file was changed where it is kept, and is not shown.')
   await appendAudit(ctx.db, { at: ctx.now, event: 'referral.attachment-opened', personId: ctx.actor.personId, subjectKind: 'attachment', subjectId: id, siteId: found.siteId })
   return { file: found.file, bytes }

@@ -18,7 +18,7 @@ import { dayBounds } from '#shared/domain/visit/site-day'
 export const importLimits = { bytes: 10_000_000, rows: 20_000, lineCharacters: 20_000 }
 const batchSize = 500
 
-export interface ImportFile { siteId: string, fileName: string, bytes: AsyncIterable<Uint8Array> }
+export interface ImportFile { siteId: string, fileName: string, isCsv: boolean, bytes: AsyncIterable<Uint8Array> }
 interface Numbered { line: number, read: ReadLine }
 interface Progress { importId: string, rules: LineRules, rows: number, fates: Record<string, number>, seen: Map<string, number> }
 
@@ -28,6 +28,7 @@ interface Progress { importId: string, rules: LineRules, rows: number, fates: Re
  */
 export async function checkImport(ctx: ServiceContext, file: ImportFile) {
   if (!may(ctx.actor, 'importReferrals', file.siteId)) throw new DomainError('referral.not-allowed', 'A coordinator or the clinical lead of this site takes in files of referrals.')
+  if (!file.isCsv) throw new DomainError('request.wrong-type', 'Send the file as text/csv, or in a form.')
   const [site] = await ctx.db.select().from(sites).where(eq(sites.id, file.siteId))
   if (!site) throw new DomainError('referral.site-not-found', 'There is no such site.')
   const [made] = await ctx.db.insert(referralImports).values({ siteId: site.id, personId: ctx.actor.personId, fileName: file.fileName, startedAt: ctx.now, progressAt: ctx.now }).returning({ id: referralImports.id })
