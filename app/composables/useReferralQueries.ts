@@ -40,7 +40,10 @@ export interface Decision { id: string, decision: 'accepted' | 'returned' | 'dec
 export function useTriageActs() {
   const api = useApi()
   const client = useQueryClient()
-  const onSettled = () => Promise.all(['referral', 'pathway', 'patient'].map(area => client.invalidateQueries({ queryKey: [area] })))
+  /** Not waited for: the refetch takes the decided referral off the page, and what was done is said before that. */
+  const onSettled = () => {
+    for (const area of ['referral', 'pathway', 'patient']) void client.invalidateQueries({ queryKey: [area] })
+  }
   const triage = useMutation({ mutationFn: ({ id, ...body }: Decision) => api<{ question: 'queued' | 'no-address' | null }>(`/api/referral/${id}/triage`, { method: 'POST', body }), onSettled })
   const merge = useMutation({ mutationFn: ({ keptId, ...body }: { keptId: string, mergedId: string, reason: string, keptRowVersion: number, mergedRowVersion: number }) => api<{ mergeId: string }>(`/api/patient/${keptId}/merge`, { method: 'POST', body }), onSettled })
   const unmerge = useMutation({ mutationFn: ({ mergeId, reason }: { mergeId: string, reason: string }) => api(`/api/patient/merge/${mergeId}/undo`, { method: 'POST', body: { reason } }), onSettled })

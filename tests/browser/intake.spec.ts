@@ -59,7 +59,7 @@ test('a coordinator looks at a file, sees the fate of every line and takes over 
   await page.getByRole('button', { name: 'Look at the file' }).click()
   await page.getByText('"middle" is not an eye. Write right, left or both.').waitFor()
   await expectAccessible(page)
-  await page.getByRole('button', { name: 'Take over 2 lines' }).click()
+  await page.getByRole('button', { name: 'Take over two lines' }).click()
   await page.getByText('from 2 lines. Left behind: 1.').waitFor()
   const { rows } = await product.pool.query('select count(*)::int n from referrals where source = \'csv\'')
   expect(rows[0].n).toBe(2)

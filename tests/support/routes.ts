@@ -1,7 +1,7 @@
 import type { RoleName } from '#shared/domain/people/vocabulary'
 
 /** Ids of one site that routes are tried with. */
-export interface Ids { site: string, surgeon: string, practice: string, patient: string, pathway: string, fresh: string, biometry: string, visit: string, review: string, place: string, escalation: string, message: string, reply: string, list: string, case: string }
+export interface Ids { site: string, surgeon: string, practice: string, patient: string, pathway: string, fresh: string, biometry: string, visit: string, review: string, place: string, escalation: string, message: string, reply: string, list: string, case: string, other: string, import: string, attachment: string, merge: string }
 
 export type Who = RoleName | 'community'
 type Words = '' | 'all' | 'team' | string
@@ -32,6 +32,7 @@ const rowVersion = 1
 /** Every route of the product. A route that is not here fails the matrix; see the test for what each word promises. */
 export const routes: readonly RouteRow[] = [
   { file: 'api/biometry/[id]/accept.post', allow: 'nurse optometrist surgeon clinical-lead', path: ids => `/api/biometry/${ids.pathway}/accept`, body: ids => ({ biometryId: ids.biometry }) },
+  { file: 'api/biometry/[id]/dicom.post', allow: 'nurse optometrist surgeon clinical-lead', path: ids => `/api/biometry/${ids.pathway}/dicom` },
   { file: 'api/biometry/[id]/explain.post', allow: 'nurse optometrist surgeon clinical-lead', path: ids => `/api/biometry/${ids.pathway}/explain`, body: ids => ({ biometryId: ids.biometry, ruleId: 'a.rule', words: 'Looked at again.' }) },
   { file: 'api/biometry/[id]/index.post', allow: 'nurse optometrist surgeon clinical-lead', path: ids => `/api/biometry/${ids.pathway}`, body: () => ({ eye: measures, baseVersion: 900 }) },
   { file: 'api/biometry/[id]/lens-plan.post', allow: surgeons, path: ids => `/api/biometry/${ids.pathway}/lens-plan`, body: ids => ({ ...plan(ids), baseVersion: 900 }) },
@@ -70,13 +71,26 @@ export const routes: readonly RouteRow[] = [
   { file: 'api/pathway/index.get', allow: 'all', foreign: 'own-view' },
   { file: 'api/patient/[id].get', allow: `${team} community`, path: ids => `/api/patient/${ids.patient}` },
   { file: 'api/patient/[id]/contacts.put', allow: team, path: ids => `/api/patient/${ids.patient}/contacts`, body: () => ({ phone: '07700 900812', rowVersion: 900 }) },
+  { file: 'api/patient/[id]/merge.post', allow: 'coordinator surgeon clinical-lead', path: ids => `/api/patient/${ids.patient}/merge`, body: ids => ({ mergedId: ids.other, reason: 'Same person', keptRowVersion: 900, mergedRowVersion: 900 }) },
+  { file: 'api/patient/[id]/merges.get', allow: `${team} community`, path: ids => `/api/patient/${ids.patient}/merges` },
+  { file: 'api/patient/merge/[id]/undo.post', allow: 'coordinator surgeon clinical-lead', path: ids => `/api/patient/merge/${ids.merge}/undo`, body: () => ({ reason: 'Two people' }) },
   { file: 'api/patient/index.get', allow: 'all', path: () => '/api/patient?find=am', foreign: 'own-view' },
   { file: 'api/patient/index.post', allow: 'coordinator nurse surgeon clinical-lead', body: ids => ({ siteId: ids.site, patientId: ids.patient, eyes: ['right'], referral: { referrer: 'A practice', reason: 'Blurred sight' } }), foreign: 'refused' },
   { file: 'api/people/me.get', allow: 'all', foreign: 'own-view' },
   { file: 'api/people/sign-in.post', allow: 'all', public: 'Nobody is signed in yet.', body: () => ({ email: 'nobody@example.org', password: 'not a password of anybody' }) },
   { file: 'api/people/sign-out.post', allow: 'all', body: () => ({}), foreign: 'own-view' },
+  { file: 'api/referral/[id]/attachments/index.get', allow: `${team} community`, path: ids => `/api/referral/${ids.pathway}/attachments` },
+  { file: 'api/referral/[id]/attachments/index.post', allow: team, path: ids => `/api/referral/${ids.pathway}/attachments` },
+  { file: 'api/referral/[id]/index.get', allow: `${team} community`, path: ids => `/api/referral/${ids.fresh}` },
   { file: 'api/referral/[id]/index.put', allow: team, path: ids => `/api/referral/${ids.pathway}`, body: () => ({ referrer: 'A practice', reason: 'Blurred sight', redFlags: noFlags, rowVersion: 900 }) },
   { file: 'api/referral/[id]/triage.post', allow: surgeons, path: ids => `/api/referral/${ids.fresh}/triage`, body: () => ({ decision: 'accepted', redFlags: noFlags, rowVersion: 900 }) },
+  { file: 'api/referral/fhir.post', allow: 'coordinator clinical-lead', path: ids => `/api/referral/fhir?siteId=${ids.site}`, body: () => ({ resourceType: 'Bundle' }), foreign: 'refused' },
+  { file: 'api/referral/import/[id]/commit.post', allow: 'coordinator clinical-lead', path: ids => `/api/referral/import/${ids.import}/commit` },
+  { file: 'api/referral/import/[id]/errors.get', allow: 'coordinator clinical-lead', path: ids => `/api/referral/import/${ids.import}/errors` },
+  { file: 'api/referral/import/[id]/index.get', allow: 'coordinator clinical-lead', path: ids => `/api/referral/import/${ids.import}` },
+  { file: 'api/referral/import/index.get', allow: 'coordinator clinical-lead', foreign: 'own-view' },
+  { file: 'api/referral/import/index.post', allow: 'coordinator clinical-lead', path: ids => `/api/referral/import?siteId=${ids.site}`, foreign: 'refused' },
+  { file: 'api/referral/index.get', allow: 'coordinator surgeon clinical-lead', foreign: 'own-view' },
   { file: 'api/review/[visitId]/amend.post', allow: 'optometrist surgeon clinical-lead community', path: ids => `/api/review/${ids.review}/amend`, body: () => ({ findings, reason: 'Typed wrongly', baseVersion: 900 }) },
   { file: 'api/review/[visitId]/draft.put', allow: 'optometrist surgeon clinical-lead community', path: ids => `/api/review/${ids.visit}/draft`, body: () => ({ findings, rowVersion: 900 }) },
   { file: 'api/review/[visitId]/index.get', allow: `${team} community`, path: ids => `/api/review/${ids.visit}` },
@@ -113,6 +127,7 @@ export const routes: readonly RouteRow[] = [
   { file: 'api/visit/index.post', allow: 'nurse coordinator optometrist surgeon clinical-lead', body: ids => ({ pathwayId: ids.fresh, placeId: ids.place, kind: 'final' }) },
   { file: 'api/visit/open-places.get', allow: 'all', path: () => '/api/visit/open-places?kind=day-one', foreign: 'own-view' },
   { file: 'api/visit/to-book.get', allow: 'all', foreign: 'own-view' },
+  { file: 'routes/files/[id].get', allow: `${team} community`, path: ids => `/files/${ids.attachment}` },
   { file: 'routes/health/ready.get', allow: 'all', public: 'Whoever starts the product asks whether it is ready.' },
   { file: 'routes/live.get', allow: 'all', foreign: 'own-view' },
   { file: 'routes/webhooks/text/inbound.post', allow: 'all', public: 'The text provider proves itself by its signature.' },

@@ -22,7 +22,12 @@ export async function idsOf(pool: pg.Pool, siteId: string, practice: string): Pr
   const reply = await made('insert into inbound_texts (provider_id, from_number, body, received_at, patient_id, site_id, meaning) values ($1, \'+447700900812\', \'What time?\', now(), $2, $3, \'words\') returning id', [`SMmatrix${siteId}`, patient, siteId])
   const list = await made('insert into theatre_lists (site_id, surgeon_id, room, starts_at, ends_at) values ($1, $2, \'Matrix\', now() + interval \'40 days\', now() + interval \'40 days 4 hours\') returning id', [siteId, surgeon])
   const listed = await made('insert into theatre_cases (list_id, pathway_id, position, planned_minutes, state) values ($1, $2, 1, 30, \'planned\') returning id', [list, fresh])
+  const taken = await made('insert into referral_imports (site_id, person_id, file_name, state, started_at, progress_at) values ($1, $2, \'matrix.csv\', \'checked\', now(), now()) returning id', [siteId, surgeon])
+  // Its bytes are nowhere: who may see it is told so, everybody else that there is nothing.
+  const attachment = await made('insert into attachments (patient_id, pathway_id, name, media_type, bytes, sha256, stored_as, added_at) values ($1, $2, \'matrix.pdf\', \'application/pdf\', 1, \'0\', $3, now()) returning id', [patient, pathway, `00/${crypto.randomUUID()}`])
+  const merge = await made('insert into patient_merges (kept_id, merged_id, reason, before, signed_by, signed_at) values ($1, $2, \'Matrix\', \'{}\', $3, now()) returning id', [patient, freshPatient, surgeon])
   return {
+    other: freshPatient, import: taken, attachment, merge,
     site: siteId, surgeon, practice, patient, pathway, fresh, visit, escalation, list, case: listed,
     biometry: await of('select b.id from biometries b join pathways p on p.id = b.pathway_id where p.site_id = $1 and p.id = $2 order by b.version desc limit 1', pathway),
     review: visit,
