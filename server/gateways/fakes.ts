@@ -1,8 +1,8 @@
 import { ofetch } from 'ofetch'
 
 interface FakeText { sid: string, direction: 'to-patient' | 'from-patient', from: string, to: string, body: string, status: string, at: string }
-interface FakeMail { to: string, subject: string, text: string, at: string }
-interface FakeState { mode: string, failing: string[] }
+interface FakeMail { to: string, subject: string, text: string, at: string, attachments: string[] }
+interface FakeState { mode: string, failing: string[], refuseMail: boolean }
 
 /** The control address of the demo's stand-ins. Only the demo has one. */
 function control() {

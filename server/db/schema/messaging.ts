@@ -58,6 +58,7 @@ export const messages = pgTable('messages', {
   index('messages_checks_sent').on(table.kind, table.dueAt).where(sql`kind = 'safety.day3'`),
   index('messages_alerts').on(table.personId, table.dueAt).where(sql`person_id is not null`),
   index('messages_visit').on(table.visitId),
+  index('messages_site_day').on(table.siteId, table.dueAt, table.id),
 ])
 
 /** Append-only. */

@@ -1,10 +1,14 @@
-import { and, eq, gte, inArray, sql } from 'drizzle-orm'
+import { and, asc, eq, gte, inArray, lte, sql } from 'drizzle-orm'
 import { demoClock, messages, patients, people } from '#server/db/schema/index'
 import { readFakes, tellFakes } from '#server/gateways/fakes'
 import { appendAudit } from '#server/services/audit/append-audit'
 import { notifyLive } from '#server/services/audit/notify-live'
 import type { SystemContext } from '#server/services/context'
 import { DomainError } from '#shared/domain/errors'
+
+const lineBackMs = 24 * 3_600_000
+const lineAheadMs = 7 * 24 * 3_600_000
+const mostOnLine = 300
 
 /** The demo's tools do not exist outside the demo. */
 function requireDemo(): void {
@@ -17,16 +21,18 @@ export async function unscopedReadDemo(ctx: SystemContext) {
   const fakes = await readFakes()
   const texts = fakes?.texts ?? []
   const numbers = [...new Set(texts.map(text => text.direction === 'to-patient' ? text.to : text.from))]
-  const [known, staff, [waiting]] = await Promise.all([
+  const [known, staff, [waiting], line] = await Promise.all([
     numbers.length ? ctx.db.select({ phone: patients.phone, name: patients.name }).from(patients).where(inArray(patients.phone, numbers)) : [],
     numbers.length ? ctx.db.select({ phone: people.phone, name: people.name }).from(people).where(inArray(people.phone, numbers)) : [],
     ctx.db.select({ n: sql<number>`count(*)::int`, next: sql<string | null>`min(${messages.dueAt})` }).from(messages).where(and(eq(messages.state, 'queued'), gte(messages.expiresAt, ctx.now))),
+    ctx.db.select({ id: messages.id, kind: messages.kind, state: messages.state, dueAt: messages.dueAt, sentAt: messages.sentAt }).from(messages)
+      .where(and(inArray(messages.state, ['queued', 'sending', 'sent', 'delivered']), gte(messages.dueAt, new Date(ctx.now.getTime() - lineBackMs)), lte(messages.dueAt, new Date(ctx.now.getTime() + lineAheadMs)))).orderBy(asc(messages.dueAt)).limit(mostOnLine),
   ])
   const phones = numbers.map(number => ({
     number, name: known.find(each => each.phone === number)?.name ?? staff.find(each => each.phone === number)?.name ?? 'Nobody we know', isStaff: staff.some(each => each.phone === number),
     texts: texts.filter(text => (text.direction === 'to-patient' ? text.to : text.from) === number).slice(-30),
   })).sort((left, right) => (right.texts.at(-1)?.at ?? '').localeCompare(left.texts.at(-1)?.at ?? ''))
-  return { now: ctx.now, connected: fakes !== undefined, mode: fakes?.state.mode ?? 'normal', failing: fakes?.state.failing ?? [], phones: phones.slice(0, 12), mails: (fakes?.mails ?? []).slice(-40).reverse(), waiting: waiting?.n ?? 0, nextDueAt: waiting?.next ? new Date(waiting.next) : null }
+  return { now: ctx.now, connected: fakes !== undefined, mode: fakes?.state.mode ?? 'normal', failing: fakes?.state.failing ?? [], refuseMail: fakes?.state.refuseMail ?? false, line, phones: phones.slice(0, 12), mails: (fakes?.mails ?? []).slice(-40).reverse(), waiting: waiting?.n ?? 0, nextDueAt: waiting?.next ? new Date(waiting.next) : null }
 }
 
 export async function replyAsPatient(input: { from: string, body: string }): Promise<void> {
@@ -34,7 +40,7 @@ export async function replyAsPatient(input: { from: string, body: string }): Pro
   await tellFakes('/control/reply', input)
 }
 
-export async function setDemoFault(input: { mode?: string, failing?: string[] }): Promise<void> {
+export async function setDemoFault(input: { mode?: string, failing?: string[], refuseMail?: boolean }): Promise<void> {
   requireDemo()
   await tellFakes('/control/mode', input)
 }

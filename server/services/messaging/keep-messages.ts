@@ -55,5 +55,5 @@ async function queueAgain(tx: Transaction, found: Row, row: NewMessage, now: Dat
 
 async function withLink(tx: Transaction, row: NewMessage, now: Date): Promise<string> {
   if (!row.patientId || !row.body.includes(linkMark)) return row.body
-  return row.body.replace(linkMark, await makeLink(tx, { patientId: row.patientId, pathwayId: row.pathwayId ?? null, visitId: row.visitId ?? null, now }))
+  return row.body.replace(linkMark, await makeLink(tx, { patientId: row.patientId, pathwayId: row.pathwayId ?? null, visitId: row.visitId ?? null, language: row.language, now }))
 }

@@ -1,9 +1,10 @@
-import { and, asc, desc, eq, gte, inArray, or } from 'drizzle-orm'
+import { and, asc, desc, eq, gte, inArray, ne, or } from 'drizzle-orm'
 import type { Queryable } from '#server/db/client'
 import { pathways, patientLinks, patients, sites, symptomChecks, visits } from '#server/db/schema/index'
 import { hashSecret } from '#server/services/people/tokens'
 import { DomainError } from '#shared/domain/errors'
 
+const mostChecks = 20
 const live = ['booked', 'arrived', 'with-optometrist', 'missing'] as const
 
 /** Who holds this link is one patient: everything read here is of that patient, and of the link's own pathway. */
@@ -17,8 +18,9 @@ export async function unscopedLoadLink(db: Queryable, input: { token: string, li
   const [visit] = await db.select().from(visits)
     .where(and(eq(visits.pathwayId, row.pathway.id), inArray(visits.state, live), or(gte(visits.startsAt, since), eq(visits.state, 'missing')))).orderBy(asc(visits.startsAt)).limit(1)
   const [site] = await db.select().from(sites).where(eq(sites.id, visit?.siteId ?? row.pathway.siteId))
-  const [told] = await db.select().from(symptomChecks).where(and(eq(symptomChecks.pathwayId, row.pathway.id), gte(symptomChecks.at, since))).orderBy(desc(symptomChecks.at)).limit(1)
-  return site ? { ...row, visit, site, told } : undefined
+  const told = await db.select().from(symptomChecks).where(and(eq(symptomChecks.pathwayId, row.pathway.id), gte(symptomChecks.at, since))).orderBy(desc(symptomChecks.at)).limit(mostChecks)
+  const [later] = await db.select({ startsAt: visits.startsAt }).from(visits).where(and(eq(visits.pathwayId, row.pathway.id), eq(visits.state, 'booked'), gte(visits.startsAt, visit?.startsAt ?? input.now), visit ? ne(visits.id, visit.id) : undefined)).orderBy(asc(visits.startsAt)).limit(1)
+  return site ? { ...row, visit, site, told, later } : undefined
 }
 
 export type LoadedLink = NonNullable<Awaited<ReturnType<typeof unscopedLoadLink>>>

@@ -10,8 +10,9 @@ export function origin(): string {
 }
 
 /** A link that opens this patient's own page. Only its hash is kept, so a stolen table opens nothing. */
-export async function makeLink(tx: Transaction, input: { patientId: string, pathwayId: string | null, visitId: string | null, now: Date }): Promise<string> {
+export async function makeLink(tx: Transaction, input: { patientId: string, pathwayId: string | null, visitId: string | null, language?: string, now: Date }): Promise<string> {
   const token = newSecret()
   await tx.insert(patientLinks).values({ tokenHash: hashSecret(token), patientId: input.patientId, pathwayId: input.pathwayId, visitId: input.visitId, createdAt: input.now, expiresAt: new Date(input.now.getTime() + linkDays * 86_400_000) })
-  return `${origin()}/v/${token}`
+  // The language stands in the address, for the page asks the birth date before it may know whose it is.
+  return `${origin()}/v/${token}${input.language && input.language !== 'en' ? `?l=${input.language}` : ''}`
 }

@@ -3,6 +3,8 @@ import { beforeEach, describe, expect, it } from 'vitest'
 import { escalations, inboundTexts, messages, patientLinks, patients, visits } from '#server/db/schema/index'
 import { answerSymptoms } from '#server/services/messaging/answer-symptoms'
 import { answerVisit } from '#server/services/messaging/answer-visit'
+import { presentLinkPage } from '#server/presenters/messaging-link'
+import { unscopedLoadLink } from '#server/services/messaging/load-link'
 import { openLink } from '#server/services/messaging/open-link'
 import { makeLink } from '#server/services/messaging/patient-link'
 import { receiveText } from '#server/services/messaging/receive-text'
@@ -93,7 +95,7 @@ describe('the patient\'s link', () => {
   it('raises an escalation for a red symptom and leaves the visit booked', async () => {
     const token = await link()
     const { linkId } = await openLink(ctx(), { token, birthDate: '1955-02-03' })
-    expect(await answerSymptoms(ctx(), { token, linkId, symptoms: ['sight-worse'] })).toEqual({ route: 'now' })
+    expect(await answerSymptoms(ctx(), { token, linkId, symptoms: ['sight-worse'], words: '' })).toEqual({ route: 'now' })
     const [raised] = await database.db.select().from(escalations).where(eq(escalations.pathwayId, ids.pathway))
     expect(raised?.urgency).toBe('now')
     expect((await database.db.select().from(visits)).map(visit => visit.state)).toEqual(['booked'])
@@ -101,7 +103,40 @@ describe('the patient\'s link', () => {
 
   it('refuses an answer without the cookie of this very link', async () => {
     const token = await link()
-    await expect(answerSymptoms(ctx(), { token, linkId: undefined, symptoms: ['injury'] })).rejects.toMatchObject({ code: 'messaging.expired' })
+    await expect(answerSymptoms(ctx(), { token, linkId: undefined, symptoms: ['injury'], words: '' })).rejects.toMatchObject({ code: 'messaging.expired' })
     expect(await database.db.select().from(escalations)).toHaveLength(0)
+  })
+})
+
+describe('free words on the page', () => {
+  const tell = async (token: string, linkId: string, words: string, symptoms: Parameters<typeof answerSymptoms>[1]['symptoms'] = []) => answerSymptoms(ctx(), { token, linkId, symptoms, words })
+  const opened = async () => {
+    const token = await link()
+    return { token, ...await openLink(ctx(), { token, birthDate: '1955-02-03' }) }
+  }
+
+  it('reach the nurse\'s list, and raise what a worried text raises', async () => {
+    const { token, linkId } = await opened()
+    expect(await tell(token, linkId, 'May I wash my hair?')).toEqual({ route: 'nurse' })
+    expect((await database.db.select().from(inboundTexts)).map(row => [row.body, row.handledAt])).toEqual([['On their page: May I wash my hair?', null]])
+    expect(await database.db.select().from(escalations)).toHaveLength(0)
+    expect(await tell(token, linkId, 'It hurts terribly')).toEqual({ route: 'now' })
+    expect((await database.db.select().from(escalations)).map(row => row.urgency)).toEqual(['now'])
+  })
+
+  it('said after an urgent answer never take it away', async () => {
+    const { token, linkId } = await opened()
+    await tell(token, linkId, '', ['curtain'])
+    await tell(token, linkId, 'Since this morning.')
+    const shown = presentLinkPage(await unscopedLoadLink(database.db, { token, linkId, now }), 'pl', now)
+    expect([shown.page?.toldUs?.route, shown.page?.toldUs?.words]).toEqual(['now', ['Zasłona lub cień w części pola widzenia', 'Since this morning.']])
+    expect(shown.page?.expected).toBe('Wizyta: piątek, 16 października, godz. 11:00.')
+  })
+
+  it('every link shows the same before it is opened, in the language asked for', async () => {
+    const token = await link()
+    const guessed = presentLinkPage(await unscopedLoadLink(database.db, { token: 'guessed-guessed-guessed', linkId: undefined, now }), 'ur', now)
+    expect(presentLinkPage(await unscopedLoadLink(database.db, { token, linkId: undefined, now }), 'ur', now)).toEqual(guessed)
+    expect([guessed.opened, guessed.direction, guessed.page]).toEqual([false, 'rtl', undefined])
   })
 })

@@ -1,0 +1,1 @@
+CREATE INDEX "messages_site_day" ON "messages" USING btree ("site_id","due_at","id");
