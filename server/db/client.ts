@@ -16,6 +16,7 @@ export function openPool(url = process.env.DATABASE_URL): pg.Pool {
   const opened = new pg.Pool({ connectionString: url, max: Number(process.env.DAWNWARD_POOL ?? 16), application_name: 'dawnward' })
   // An idle connection that dies must not take the process with it; the next query opens another.
   opened.on('error', () => undefined)
+  opened.on('connect', client => client.on('error', () => undefined))
   return opened
 }
 

@@ -20,14 +20,15 @@ export interface RenderedMessage extends Template {
 }
 
 /** Rises when any built-in text changes; kept with each message. */
-export const templatesVersion = 1
+export const templatesVersion = 2
 
-interface PatientTemplate { say: PatientSentenceKey, subject: 'subjectVisit' | 'subjectMessage', movable?: true, withoutWorried?: true }
+interface PatientTemplate { say: PatientSentenceKey, subject: 'subjectVisit' | 'subjectMessage', movable?: true, withPage?: true, withoutWorried?: true }
 
 /** Which sentences make up a patient's message. Every one ends with what to do if worried, or is that. */
 const patientTemplates: Readonly<Partial<Record<MessageKind, PatientTemplate>>> = {
   'surgery.reminder': { say: 'expected', subject: 'subjectVisit', movable: true },
-  'dayone.evening': { say: 'expected', subject: 'subjectVisit', movable: true },
+  // The one that says when to come after the operation also leads to the patient's own page.
+  'dayone.evening': { say: 'expected', subject: 'subjectVisit', movable: true, withPage: true },
   'dayone.morning': { say: 'today', subject: 'subjectVisit' },
   'visit.reminder': { say: 'expected', subject: 'subjectVisit', movable: true },
   'visit.changed': { say: 'changed', subject: 'subjectVisit', movable: true },
@@ -69,8 +70,8 @@ export function templateFor(kind: MessageKind, channel: Exclude<Channel, 'call'>
   if (!parts) throw new TypeError(`no template for ${kind}`)
   const sentences = patientSentences[language]
   const worried = parts.withoutWorried ? [] : [sentences.worried]
-  if (channel === 'text') return { text: [sentences[parts.say], ...(parts.movable ? [sentences.reply] : []), ...worried].join(' ') }
-  return { subject: sentences[parts.subject], text: [sentences[parts.say], ...(parts.movable ? [sentences.move] : []), ...worried].join('\n\n') }
+  if (channel === 'text') return { text: [sentences[parts.say], ...(parts.movable ? [sentences.reply] : []), ...(parts.withPage ? ['{link}'] : []), ...worried].join(' ') }
+  return { subject: sentences[parts.subject], text: [sentences[parts.say], ...(parts.movable ? [sentences.move] : []), ...(parts.withPage ? ['{link}'] : []), ...worried].join('\n\n') }
 }
 
 /** The placeholders of a text, in order, once each. */
