@@ -21,10 +21,11 @@ afterAll(async () => {
 
 interface Patient { patient: string, pathway: string, visit: string, born: string, path: string }
 
-/** A patient who was operated and has a visit, and a link to their page as a text would carry it. */
+/** A patient who was operated and has a visit that they have not answered, and a link to their page as a text would carry it. */
 async function linkOf(order: number): Promise<Patient> {
   const { rows } = await product.pool.query('select p.id as patient, w.id as pathway, v.id as visit, p.birth_date::text as born from patients p join pathways w on w.patient_id = p.id join visits v on v.pathway_id = w.id where v.state = \'booked\' and w.operated_at is not null and w.operated_at < now() and v.starts_at > now() - interval \'10 hours\' order by v.starts_at, v.id offset $1 limit 1', [order])
   const [row] = rows
+  await product.pool.query('update visits set confirmed_at = null, cannot_come_at = null where id = $1', [row.visit])
   const token = randomBytes(32).toString('base64url')
   await product.pool.query('insert into patient_links (id, token_hash, patient_id, pathway_id, visit_id, created_at, expires_at) values (gen_random_uuid(), $1, $2, $3, $4, now(), now() + interval \'30 days\')', [createHash('sha256').update(token).digest('hex'), row.patient, row.pathway, row.visit])
   return { ...row, path: `/v/${token}` }

@@ -102,9 +102,9 @@ describe('length of a text', () => {
 describe('built-in texts on the network', () => {
   const values = { date: 'Wednesday 14 October', time: '09:40', place: 'Ferncombe, door C', phone: '01632 960118', link: 'https://example.org/p/7f3k', urgency: 'This week', number: 'E-1042' }
 
-  it.each(messageKinds)('%s in English is one part of plain characters with usual values', (kind) => {
+  it.each(messageKinds)('%s in English is one part of plain characters with usual values, two where it also leads to the patient\'s page', (kind) => {
     const { text } = renderTemplate({ kind, channel: 'text', language: 'en', values })
-    expect(measureText(text)).toMatchObject({ encoding: 'GSM-7', parts: 1 })
+    expect(measureText(text)).toMatchObject({ encoding: 'GSM-7', parts: kind === 'dayone.evening' ? 2 : 1 })
   })
 
   it('takes at most four parts in any language', () => {
