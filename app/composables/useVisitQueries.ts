@@ -1,10 +1,12 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/vue-query'
 import type { MaybeRefOrGetter } from 'vue'
+import type { Proposal } from '#server/presenters/booking'
 import type { ClinicDay, OpenPlaces, ToBook } from '#server/presenters/visit'
 
 export const visitKeys = {
   day: (siteId: MaybeRefOrGetter<string | undefined>, date: MaybeRefOrGetter<string | undefined>) => ['visit', 'day', siteId, date] as const,
   toBook: (siteId: MaybeRefOrGetter<string | undefined>) => ['visit', 'to-book', siteId] as const,
+  proposal: (siteId: MaybeRefOrGetter<string | undefined>) => ['visit', 'proposal', siteId] as const,
   places: (kind: MaybeRefOrGetter<string>) => ['visit', 'places', kind] as const,
 }
 
@@ -19,6 +21,14 @@ export function useClinicDay(siteId: MaybeRefOrGetter<string | undefined>, date:
 export function useToBook(siteId: MaybeRefOrGetter<string | undefined>) {
   const api = useApi()
   const query = useQuery({ queryKey: visitKeys.toBook(siteId), queryFn: () => api<ToBook>('/api/visit/to-book', { query: { siteId: toValue(siteId) } }), refetchInterval: 60_000 })
+  onServerPrefetch(() => query.suspense().catch(() => undefined))
+  return query
+}
+
+/** One place proposed for each eye that waits. Nothing is booked by asking. */
+export function useProposal(siteId: MaybeRefOrGetter<string | undefined>) {
+  const api = useApi()
+  const query = useQuery({ queryKey: visitKeys.proposal(siteId), queryFn: () => api<Proposal>('/api/visit/proposal', { query: { siteId: toValue(siteId) } }), refetchInterval: 60_000 })
   onServerPrefetch(() => query.suspense().catch(() => undefined))
   return query
 }
@@ -38,10 +48,23 @@ export function useVisitActs() {
   const client = useQueryClient()
   const onSettled = () => Promise.all([client.invalidateQueries({ queryKey: ['visit'] }), client.invalidateQueries({ queryKey: ['pathway'] })])
   const step = useMutation({ mutationFn: (input: { id: string, step: Step, rowVersion: number }) => api(`/api/visit/${input.id}/${input.step}`, { method: 'POST', body: { rowVersion: input.rowVersion } }), onSettled })
-  const book = useMutation({ mutationFn: (body: { pathwayId: string, placeId: string, kind: string }) => api<{ id: string, startsAt: string }>('/api/visit', { method: 'POST', body }), onSettled })
-  const bookList = useMutation({ mutationFn: (bookings: { pathwayId: string, placeId: string }[]) => api<{ booked: { pathwayId: string, startsAt: string }[], refused: { pathwayId: string, reason: string }[] }>('/api/visit/book-list', { method: 'POST', body: { bookings } }), onSettled })
+  const book = useMutation({ mutationFn: (body: { pathwayId: string, placeId: string, kind: string, despite?: string }) => api<{ id: string, startsAt: string }>('/api/visit', { method: 'POST', body }), onSettled })
+  const bookList = useMutation({ mutationFn: (bookings: { pathwayId: string, placeId: string, despite?: string }[]) => api<{ booked: { pathwayId: string, startsAt: string }[], refused: { pathwayId: string, reason: string }[] }>('/api/visit/book-list', { method: 'POST', body: { bookings } }), onSettled })
   const move = useMutation({ mutationFn: (input: { id: string, placeId: string, rowVersion: number }) => api(`/api/visit/${input.id}/move`, { method: 'POST', body: { placeId: input.placeId, rowVersion: input.rowVersion } }), onSettled })
   const cancel = useMutation({ mutationFn: (input: { id: string, reason: string, rowVersion: number }) => api(`/api/visit/${input.id}/cancel`, { method: 'POST', body: { reason: input.reason, rowVersion: input.rowVersion } }), onSettled })
   const logStep = useMutation({ mutationFn: (input: { id: string, step: string, outcome: string }) => api(`/api/visit/${input.id}/missing-step`, { method: 'POST', body: { step: input.step, outcome: input.outcome } }), onSettled })
   return { step, book, bookList, move, cancel, logStep }
+}
+
+/** The coordinator's acts on clinic sessions and their places. */
+export function useSessionActs() {
+  const api = useApi()
+  const client = useQueryClient()
+  const onSettled = () => client.invalidateQueries({ queryKey: ['visit'] })
+  const add = useMutation({ mutationFn: (body: { siteId: string, kind: string, room: string, startsAt: string, places: number, minutes: number }) => api<{ id: string }>('/api/visit/session', { method: 'POST', body }), onSettled })
+  const change = useMutation({ mutationFn: (input: { id: string, room: string, rowVersion: number }) => api(`/api/visit/session/${input.id}`, { method: 'PUT', body: { room: input.room, rowVersion: input.rowVersion } }), onSettled })
+  const addPlaces = useMutation({ mutationFn: ({ id, ...body }: { id: string, places: number, minutes: number, rowVersion: number, startsAt?: string }) => api(`/api/visit/session/${id}/places`, { method: 'POST', body }), onSettled })
+  const close = useMutation({ mutationFn: (input: { id: string, rowVersion: number }) => api(`/api/visit/session/${input.id}/close`, { method: 'POST', body: { rowVersion: input.rowVersion } }), onSettled })
+  const closePlace = useMutation({ mutationFn: (id: string) => api(`/api/visit/place/${id}/close`, { method: 'POST', body: {} }), onSettled })
+  return { add, change, addPlaces, close, closePlace }
 }

@@ -2,12 +2,14 @@ import { Logger, run } from 'graphile-worker'
 import type { Runner } from 'graphile-worker'
 import { useDatabase, usePool } from '#server/db/client'
 import { sweepUnansweredChecks } from '#server/jobs/messaging/sweep-unanswered-checks'
+import { sweepMissing } from '#server/jobs/visit/sweep-missing'
 import { now } from '#server/utils/clock'
 import { log } from '#server/utils/log'
 
 /** What is done now and then. Each finds its own due rows, so a chore that did not run is made up for by the next. */
 const chores = {
   'sweep-unanswered-checks': sweepUnansweredChecks,
+  'sweep-missing': sweepMissing,
 } as const
 
 /** Every minute; the queue sees to it that one of several processes does each. A run that died is simply the next minute's. */

@@ -14,3 +14,8 @@ export function maySendIn(actor: Actor, siteId: string): boolean {
 export function mayBook(actor: Actor, siteId: string): boolean {
   return hasRoleAt(actor, siteId, 'nurse', 'coordinator', 'surgeon', 'clinical-lead', 'optometrist')
 }
+
+/** Clinic sessions and their places are made, changed and closed by the coordinator, or the clinical lead who answers for them. */
+export function mayRunSessions(actor: Actor, siteId: string): boolean {
+  return hasRoleAt(actor, siteId, 'coordinator', 'clinical-lead')
+}

@@ -1,4 +1,5 @@
-import { mayBook, mayRunClinic, maySendIn } from '#server/policies/visit'
+import { mayBook, mayRunClinic, mayRunSessions, maySendIn } from '#server/policies/visit'
+import { presentNeed } from '#server/presenters/booking'
 import type { getClinicDay } from '#server/services/visit/get-clinic-day'
 import type { listOpenPlaces } from '#server/services/visit/list-open-places'
 import type { listToBook } from '#server/services/visit/list-to-book'
@@ -14,10 +15,10 @@ export function presentVisit(visit: typeof visits.$inferSelect) {
 export function presentClinicDay(day: Row<typeof getClinicDay>, actor: Actor) {
   const siteId = day.site.id
   return {
-    site: { id: day.site.id, name: day.site.name, zone: day.site.zone, phone: day.site.phone },
+    site: { id: day.site.id, name: day.site.name, zone: day.site.zone, phone: day.site.phone, isHospital: day.site.isHospital },
     sites: day.sites.filter(each => actor.roles.some(role => role.siteId === each.id)),
     date: day.date,
-    abilities: { canRunClinic: mayRunClinic(actor, siteId), canSendIn: maySendIn(actor, siteId), canBook: mayBook(actor, siteId), canReview: actor.roles.some(role => ['optometrist', 'surgeon', 'clinical-lead'].includes(role.role)) },
+    abilities: { canRunClinic: mayRunClinic(actor, siteId), canSendIn: maySendIn(actor, siteId), canBook: mayBook(actor, siteId), canRunSessions: mayRunSessions(actor, siteId), canReview: actor.roles.some(role => ['optometrist', 'surgeon', 'clinical-lead'].includes(role.role)) },
     visits: day.visits.map((row) => {
       const signed = day.signed.find(each => each.visitId === row.visit.id)
       const escalation = day.escalations.find(each => each.pathwayId === row.pathway.id)
@@ -27,6 +28,7 @@ export function presentClinicDay(day: Row<typeof getClinicDay>, actor: Actor) {
         operatedAt: row.pathway.operatedAt?.toISOString() ?? null,
         patient: { id: row.patient.id, name: row.patient.name, birthDate: row.patient.birthDate, recordNumber: row.patient.recordNumber, phone: row.patient.phone, carer: row.patient.carer },
         toKnow: toKnow(row),
+        need: row.visit.kind === 'day-one' ? presentNeed(row.pathway.dayOneNeed) : null,
         confirmedAt: row.visit.confirmedAt?.toISOString() ?? null,
         cannotComeAt: row.visit.cannotComeAt?.toISOString() ?? null,
         arrivedAt: row.visit.arrivedAt?.toISOString() ?? null,
@@ -40,6 +42,7 @@ export function presentClinicDay(day: Row<typeof getClinicDay>, actor: Actor) {
       }
     }),
     places: day.places.map(place => ({ id: place.id, sessionId: place.sessionId, kind: place.kind, room: place.room, startsAt: place.startsAt.toISOString(), minutes: place.minutes, closed: place.closedAt !== null, visitId: place.visitId })),
+    sessions: day.sessions.map(session => ({ id: session.id, kind: session.kind, room: session.room, startsAt: session.startsAt.toISOString(), endsAt: session.endsAt.toISOString(), closed: session.closedAt !== null, rowVersion: session.rowVersion })),
     texts: day.texts.map(text => ({ id: text.id, patientId: text.patientId, patientName: text.patientName, body: text.body, meaning: text.meaning, receivedAt: text.receivedAt.toISOString(), handled: text.handledAt !== null })),
   }
 }

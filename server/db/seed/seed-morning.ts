@@ -1,6 +1,6 @@
 import { eq, sql } from 'drizzle-orm'
 import type { Transaction } from '#server/db/client'
-import { clinicSessions, escalations, inboundTexts, messageEvents, messages, sessionPlaces, visits } from '#server/db/schema/index'
+import { clinicSessions, escalations, inboundTexts, messageEvents, messages, missingSteps, sessionPlaces, visits } from '#server/db/schema/index'
 import { asPerson, quietEye } from '#server/db/seed/seed-cast'
 import { seedId } from '#server/db/seed/seed-id'
 import { aroundNow } from '#server/db/seed/seed-times'
@@ -45,6 +45,7 @@ const rooms = [
 export async function seedMorning(tx: Transaction, times: ScenarioTimes): Promise<void> {
   await seedRooms(tx, times)
   for (const seen of cast) await seedVisit(tx, times, seen)
+  await tx.insert(missingSteps).values({ id: seedId('missing-step:2'), visitId: seedId('visit:day-one:2'), step: 'call', outcome: 'No answer', at: new Date(times.now.getTime() - 3 * minuteMs), personId: nurse })
   await seedSigned(tx, times)
   await seedEscalations(tx, times)
   await seedTexts(tx, times)

@@ -13,7 +13,7 @@ export async function bookList(ctx: ServiceContext, input: BookListBody) {
   const refused: { pathwayId: string, code: string, reason: string }[] = []
   for (const row of input.bookings) {
     try {
-      const visit = await bookVisit(ctx, { pathwayId: row.pathwayId, placeId: row.placeId, kind: 'day-one', note: '' })
+      const visit = await bookVisit(ctx, { pathwayId: row.pathwayId, placeId: row.placeId, kind: 'day-one', note: '', despite: row.despite })
       booked.push({ pathwayId: row.pathwayId, visitId: visit.id, startsAt: visit.startsAt })
     }
     catch (error) {

@@ -8,7 +8,9 @@ import { notifyLive } from '#server/services/audit/notify-live'
 import type { ServiceContext } from '#server/services/context'
 import { queueVisitMessages } from '#server/services/messaging/queue-messages'
 import { pathwaysInScope } from '#server/services/pathway/pathway-scope'
+import { checkSuitable } from '#server/services/visit/check-suitable'
 import { lockPlace } from '#server/services/visit/claim-place'
+import { listAlternatives } from '#server/services/visit/list-alternatives'
 import type { BookVisitBody } from '#shared/contracts/visit'
 import { DomainError } from '#shared/domain/errors'
 
@@ -29,8 +31,9 @@ export async function bookVisit(ctx: ServiceContext, input: BookVisitBody) {
       const constraint = refusedConstraint(error)
       if (constraint === 'visits_one_per_place') {
         if (input.sessionId && attempt < triesWhenBeaten) continue
-        throw new DomainError('visit.place-taken', 'That place was just taken. Choose another.')
+        throw new DomainError('visit.place-taken', 'That place was just taken. Choose another.', { detail: { alternatives: await listAlternatives(ctx, input.kind) } })
       }
+      if (error instanceof DomainError && (error.code === 'visit.place-taken' || error.code === 'visit.place-closed')) throw new DomainError(error.code, error.message, { detail: { alternatives: await listAlternatives(ctx, input.kind) } })
       if (constraint === 'visits_one_waiting_per_kind') throw new DomainError('visit.duplicate', 'This eye already has a visit of this kind waiting. Move that one instead.')
       if (constraint === 'visits_place_open') throw new DomainError('visit.place-closed', 'This session or place is closed. Choose another.')
       throw error
@@ -51,6 +54,8 @@ export async function bookInTransaction(ctx: ServiceContext, tx: Transaction, in
   if (!mayBook(ctx.actor, place.siteId)) throw new DomainError('visit.not-allowed', 'You may not book at this site.')
   if (place.startsAt <= ctx.now) throw new DomainError('visit.place-past', 'That time has passed. Choose a later one.', { fields: [{ field: 'placeId', code: 'past', message: 'That time has passed.' }] })
 
+  const unmet = input.kind === 'day-one' ? await checkSuitable(tx, { ...row.pathway, needsTransport: row.patient.needsTransport, interpreterLanguage: row.patient.interpreterLanguage }, place.placeId, ctx.now, input.despite) : []
+
   const [visit] = await tx.insert(visits).values({
     pathwayId: row.pathway.id, patientId: row.patient.id, placeId: place.placeId, siteId: place.siteId, kind: input.kind,
     startsAt: place.startsAt, bookedBy: ctx.actor.personId, bookedAt: ctx.now, note: input.note,
@@ -58,8 +63,8 @@ export async function bookInTransaction(ctx: ServiceContext, tx: Transaction, in
   if (!visit) throw new DomainError('visit.conflict', 'The visit could not be booked.')
   const [site] = await tx.select().from(sites).where(eq(sites.id, place.siteId))
   if (!site) throw new DomainError('visit.not-found', 'There is no such site.')
-  await tx.insert(pathwayEvents).values({ pathwayId: visit.pathwayId, at: ctx.now, kind: 'visit-booked', personId: ctx.actor.personId, words: 'Visit booked', detail: { visitId: visit.id, kind: visit.kind } })
-  await appendAudit(tx, { at: ctx.now, event: 'visit.booked', personId: ctx.actor.personId, subjectKind: 'visit', subjectId: visit.id, siteId: visit.siteId })
+  await tx.insert(pathwayEvents).values({ pathwayId: visit.pathwayId, at: ctx.now, kind: 'visit-booked', personId: ctx.actor.personId, words: 'Visit booked', detail: { visitId: visit.id, kind: visit.kind, ...(unmet.length ? { despite: input.despite, unmet } : {}) } })
+  await appendAudit(tx, { at: ctx.now, event: 'visit.booked', personId: ctx.actor.personId, subjectKind: 'visit', subjectId: visit.id, siteId: visit.siteId, payload: unmet.length ? { unmet } : {} })
   await queueVisitMessages(tx, { visit, patient: row.patient, pathway: row.pathway, site, now: ctx.now })
   return visit
 }

@@ -11,7 +11,7 @@ export async function getClinicDay(ctx: ServiceContext, input: { siteId?: string
   const { from, to, date } = dayBounds(site.zone, ctx.now, input.date)
   const open = ['booked', 'arrived', 'with-optometrist', 'done', 'missing'] as const
 
-  const rows = ctx.db.select({ visit: visits, pathway: { id: pathways.id, eye: pathways.eye, stage: pathways.stage, operatedAt: pathways.operatedAt }, patient: { id: patients.id, name: patients.name, birthDate: patients.birthDate, recordNumber: patients.recordNumber, phone: patients.phone, alerts: patients.alerts, needsTransport: patients.needsTransport, interpreterLanguage: patients.interpreterLanguage, carer: patients.carer }, optometrist: people.name })
+  const rows = ctx.db.select({ visit: visits, pathway: { id: pathways.id, eye: pathways.eye, stage: pathways.stage, operatedAt: pathways.operatedAt, dayOneNeed: pathways.dayOneNeed }, patient: { id: patients.id, name: patients.name, birthDate: patients.birthDate, recordNumber: patients.recordNumber, phone: patients.phone, alerts: patients.alerts, needsTransport: patients.needsTransport, interpreterLanguage: patients.interpreterLanguage, carer: patients.carer }, optometrist: people.name })
     .from(visits)
     .innerJoin(pathways, eq(pathways.id, visits.pathwayId))
     .innerJoin(patients, eq(patients.id, visits.patientId))
@@ -39,7 +39,9 @@ export async function getClinicDay(ctx: ServiceContext, input: { siteId?: string
     .from(inboundTexts).innerJoin(patients, eq(patients.id, inboundTexts.patientId))
     .where(and(eq(inboundTexts.siteId, site.id), gte(inboundTexts.receivedAt, new Date(from.getTime() - 14 * 3_600_000)))).orderBy(desc(inboundTexts.receivedAt)).limit(12)
 
+  const sessions = ctx.db.select().from(clinicSessions).where(and(eq(clinicSessions.siteId, site.id), gte(clinicSessions.startsAt, from), lt(clinicSessions.startsAt, to))).orderBy(asc(clinicSessions.startsAt), asc(clinicSessions.room))
+
   const allSites = ctx.db.select({ id: sites.id, name: sites.name }).from(sites)
-  const [visitRows, signedRows, raisedRows, placeRows, stepRows, textRows, siteRows] = await Promise.all([rows, signed, raised, places, steps, texts, allSites])
-  return { site, date, visits: visitRows, signed: signedRows, escalations: raisedRows, places: placeRows, steps: stepRows, texts: textRows, sites: siteRows }
+  const [visitRows, signedRows, raisedRows, placeRows, stepRows, textRows, siteRows, sessionRows] = await Promise.all([rows, signed, raised, places, steps, texts, allSites, sessions])
+  return { site, date, visits: visitRows, signed: signedRows, escalations: raisedRows, places: placeRows, steps: stepRows, texts: textRows, sites: siteRows, sessions: sessionRows }
 }
