@@ -1,8 +1,10 @@
 import { mayAnswer } from '#server/policies/escalation'
 import type { listEscalations } from '#server/services/escalation/list-escalations'
 import type { escalations } from '#server/db/schema/index'
+import { lastRung } from '#shared/domain/escalation/ladder'
 import type { Actor } from '#shared/domain/people/vocabulary'
 
+const rungs = Array.from({ length: lastRung }, (_, index) => index + 1)
 type Row = Awaited<ReturnType<typeof listEscalations>>[number]
 
 export function presentEscalationState(row: typeof escalations.$inferSelect) {
@@ -24,6 +26,12 @@ export function presentEscalation(row: Row, actor: Actor) {
     raisedAt: escalation.raisedAt.toISOString(),
     answerBy: escalation.answerBy.toISOString(),
     toldName: row.toldName,
+    raisedBy: row.raiserName,
+    closedBy: row.closerName,
+    isMine: [escalation.surgeonId, escalation.acknowledgedBy, row.surgeonId].includes(actor.personId),
+    alertedAt: row.alertedAt?.toISOString() ?? null,
+    reviewVisitId: row.reviewVisitId,
+    ladder: rungs.map(rung => ({ rung, name: row.rota.find(shift => shift.rung === rung)?.name ?? null })),
     rung: escalation.rung,
     nextRungAt: escalation.nextRungAt?.toISOString() ?? null,
     acknowledgedAt: escalation.acknowledgedAt?.toISOString() ?? null,
