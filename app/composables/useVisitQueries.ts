@@ -1,6 +1,6 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/vue-query'
 import type { MaybeRefOrGetter } from 'vue'
-import type { Proposal } from '#server/presenters/booking'
+import type { Proposal, SharedVisits } from '#server/presenters/booking'
 import type { ClinicDay, OpenPlaces, ToBook } from '#server/presenters/visit'
 
 export const visitKeys = {
@@ -21,6 +21,14 @@ export function useClinicDay(siteId: MaybeRefOrGetter<string | undefined>, date:
 export function useToBook(siteId: MaybeRefOrGetter<string | undefined>) {
   const api = useApi()
   const query = useQuery({ queryKey: visitKeys.toBook(siteId), queryFn: () => api<ToBook>('/api/visit/to-book', { query: { siteId: toValue(siteId) } }), refetchInterval: 60_000 })
+  onServerPrefetch(() => query.suspense().catch(() => undefined))
+  return query
+}
+
+/** Eyes shared with the caller's practice, with their visits. */
+export function useSharedVisits() {
+  const api = useApi()
+  const query = useQuery({ queryKey: ['visit', 'shared'] as const, queryFn: () => api<SharedVisits>('/api/visit/shared'), refetchInterval: 60_000 })
   onServerPrefetch(() => query.suspense().catch(() => undefined))
   return query
 }

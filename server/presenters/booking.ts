@@ -1,4 +1,6 @@
+import { mayReview } from '#server/policies/review'
 import { mayBook, mayRunSessions } from '#server/policies/visit'
+import type { listSharedVisits } from '#server/services/visit/list-shared-visits'
 import type { proposeList } from '#server/services/visit/propose-list'
 import type { StoredNeed } from '#server/services/visit/booking-need'
 import type { clinicSessions } from '#server/db/schema/index'
@@ -49,3 +51,18 @@ export type Proposal = ReturnType<typeof presentProposal>
 export function presentSession(session: typeof clinicSessions.$inferSelect) {
   return { id: session.id, siteId: session.siteId, kind: session.kind, room: session.room, startsAt: session.startsAt.toISOString(), endsAt: session.endsAt.toISOString(), closed: session.closedAt !== null, rowVersion: session.rowVersion }
 }
+
+export function presentShared({ eyes, visits, last }: Awaited<ReturnType<typeof listSharedVisits>>, actor: Actor) {
+  return {
+    items: eyes.map((row) => {
+      const reviewed = last.find(each => each.pathwayId === row.id)
+      return {
+        pathwayId: row.id, eye: row.eye, stage: row.stage, operatedAt: row.operatedAt?.toISOString() ?? null, zone: row.zone, siteName: row.siteName, sitePhone: row.sitePhone, patient: { id: row.patient.id, name: row.patient.name, phone: row.patient.phone, alerts: row.patient.alerts.map(alert => alert.words) },
+        visits: visits.filter(visit => visit.pathwayId === row.id).map(visit => ({ id: visit.id, kind: visit.kind, state: visit.state, startsAt: visit.startsAt.toISOString(), siteName: visit.siteName })),
+        last: reviewed ? { visitId: reviewed.visitId, signedAt: reviewed.signedAt.toISOString() } : null,
+        canReview: mayReview(actor, row),
+      }
+    }),
+  }
+}
+export type SharedVisits = ReturnType<typeof presentShared>
