@@ -69,5 +69,10 @@ export function useReviewDraft(visitId: Ref<string>, sheet: Ref<ReviewSheet | un
     conflict.value = null
     void flush()
   }
-  return { findings, set, flush, settle, conflict, savedAt, trouble, drop: () => store.drop(visitId.value), isSaving: acts.saveDraft.isPending }
+  /** Back to the newest signed version, as it stands: an amendment that is left changes nothing. */
+  function reset() {
+    if (sheet.value) load(sheet.value)
+    store.drop(visitId.value)
+  }
+  return { findings, set, reset, flush, settle, conflict, savedAt, trouble, drop: () => store.drop(visitId.value), isSaving: acts.saveDraft.isPending }
 }
