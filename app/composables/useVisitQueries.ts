@@ -3,11 +3,12 @@ import type { MaybeRefOrGetter } from 'vue'
 import type { Proposal, SharedVisits } from '#server/presenters/booking'
 import type { ClinicDay, OpenPlaces, ToBook } from '#server/presenters/visit'
 
+/** Keys hold values, never getters: a getter that answers nothing would be kept as a function, and no page could be sent with it. */
 export const visitKeys = {
-  day: (siteId: MaybeRefOrGetter<string | undefined>, date: MaybeRefOrGetter<string | undefined>) => ['visit', 'day', siteId, date] as const,
-  toBook: (siteId: MaybeRefOrGetter<string | undefined>) => ['visit', 'to-book', siteId] as const,
-  proposal: (siteId: MaybeRefOrGetter<string | undefined>) => ['visit', 'proposal', siteId] as const,
-  places: (kind: MaybeRefOrGetter<string>) => ['visit', 'places', kind] as const,
+  day: (siteId: MaybeRefOrGetter<string | undefined>, date: MaybeRefOrGetter<string | undefined>) => computed(() => ['visit', 'day', toValue(siteId) ?? null, toValue(date) ?? null] as const),
+  toBook: (siteId: MaybeRefOrGetter<string | undefined>) => computed(() => ['visit', 'to-book', toValue(siteId) ?? null] as const),
+  proposal: (siteId: MaybeRefOrGetter<string | undefined>) => computed(() => ['visit', 'proposal', toValue(siteId) ?? null] as const),
+  places: (kind: MaybeRefOrGetter<string>) => computed(() => ['visit', 'places', toValue(kind)] as const),
 }
 
 /** Where the morning stands: one site's clinic of one day. */
