@@ -103,7 +103,7 @@ test('the loop of the morning: booked, told, confirmed, arrived, signed, on the 
   expect(product.fakes.store.texts.filter(text => text.to === '+447700900103').every(text => !text.body.includes(name))).toBe(true)
   console.log(`shown to the surgeon ${Math.round(shownAfter)} ms after signing`)
 
-  await surgeon.getByText('I am ringing now').click()
+  await surgeon.getByRole('radio', { name: 'I am ringing now' }).check({ force: true })
   await surgeon.getByRole('button', { name: /^Acknowledge A?/ }).first().click()
   await surgeon.getByRole('button', { name: `Close it ${name}` }).click()
   await surgeon.getByText('has it: I am ringing now').waitFor()
