@@ -23,6 +23,8 @@ export type BookVisitBody = z.infer<typeof bookVisitBody>
 
 export const moveVisitBody = z.strictObject({ placeId: z.uuid(), rowVersion: z.int().positive() })
 export const cancelVisitBody = z.strictObject({ reason: words(300), rowVersion: z.int().positive() })
+/** Nothing is said beside the address; anything else is a mistake. */
+export const noBody = z.strictObject({})
 export const rowVersionBody = z.strictObject({ rowVersion: z.int().positive() })
 export const missingStepBody = z.strictObject({ step: z.enum(['call', 'text', 'second-call', 'found', 'not-found']), outcome: words(300) })
 export type MissingStepBody = z.infer<typeof missingStepBody>

@@ -1,7 +1,7 @@
 import type { RoleName } from '#shared/domain/people/vocabulary'
 
 /** Ids of one site that routes are tried with. */
-export interface Ids { site: string, surgeon: string, practice: string, patient: string, pathway: string, fresh: string, biometry: string, visit: string, review: string, place: string, escalation: string, message: string, reply: string, list: string, case: string, other: string, import: string, attachment: string, merge: string }
+export interface Ids { site: string, surgeon: string, practice: string, patient: string, pathway: string, fresh: string, biometry: string, visit: string, review: string, place: string, session: string, escalation: string, message: string, reply: string, list: string, case: string, other: string, import: string, attachment: string, merge: string }
 
 export type Who = RoleName | 'community'
 type Words = '' | 'all' | 'team' | string
@@ -126,6 +126,13 @@ export const routes: readonly RouteRow[] = [
   { file: 'api/visit/clinic.get', allow: team, foreign: 'own-view' },
   { file: 'api/visit/index.post', allow: 'nurse coordinator optometrist surgeon clinical-lead', body: ids => ({ pathwayId: ids.fresh, placeId: ids.place, kind: 'final' }) },
   { file: 'api/visit/open-places.get', allow: 'all', path: () => '/api/visit/open-places?kind=day-one', foreign: 'own-view' },
+  { file: 'api/visit/place/[id]/close.post', allow: 'coordinator clinical-lead', path: ids => `/api/visit/place/${ids.place}/close`, body: () => ({}) },
+  { file: 'api/visit/proposal.get', allow: 'all', foreign: 'own-view' },
+  { file: 'api/visit/session/[id]/close.post', allow: 'coordinator clinical-lead', path: ids => `/api/visit/session/${ids.session}/close`, body: () => ({ rowVersion: 900 }) },
+  { file: 'api/visit/session/[id]/index.put', allow: 'coordinator clinical-lead', path: ids => `/api/visit/session/${ids.session}`, body: () => ({ room: 'Matrix room', rowVersion: 900 }) },
+  { file: 'api/visit/session/[id]/places.post', allow: 'coordinator clinical-lead', path: ids => `/api/visit/session/${ids.session}/places`, body: () => ({ places: 1, minutes: 10, rowVersion: 900 }) },
+  { file: 'api/visit/session/index.post', allow: 'coordinator clinical-lead', body: ids => ({ siteId: ids.site, kind: 'follow-up', room: 'Matrix room', startsAt: soon(-90), places: 1, minutes: 10 }), foreign: 'refused' },
+  { file: 'api/visit/shared.get', allow: 'all', foreign: 'own-view' },
   { file: 'api/visit/to-book.get', allow: 'all', foreign: 'own-view' },
   { file: 'routes/files/[id].get', allow: `${team} community`, path: ids => `/files/${ids.attachment}` },
   { file: 'routes/health/ready.get', allow: 'all', public: 'Whoever starts the product asks whether it is ready.' },

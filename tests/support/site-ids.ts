@@ -32,6 +32,7 @@ export async function idsOf(pool: pg.Pool, siteId: string, practice: string): Pr
     biometry: await of('select b.id from biometries b join pathways p on p.id = b.pathway_id where p.site_id = $1 and p.id = $2 order by b.version desc limit 1', pathway),
     review: visit,
     place: await of('select s.id from session_places s join clinic_sessions c on c.id = s.session_id where c.site_id = $1 and c.starts_at > now() limit 1'),
+    session: await of('select id from clinic_sessions where site_id = $1 and starts_at > now() limit 1'),
     message, reply,
   }
 }
