@@ -1,6 +1,7 @@
 import { eq } from 'drizzle-orm'
 import type { Transaction } from '#server/db/client'
 import { lensLabels, patients, pathways, riskAssessments, theatreCases, theatreLists } from '#server/db/schema/index'
+import { aroundNow } from '#server/db/seed/seed-times'
 import type { ScenarioTimes } from '#server/db/seed/seed-times'
 import { seedId } from '#server/db/seed/seed-id'
 import { withCheckDigit } from '#shared/domain/theatre/gs1'
@@ -20,7 +21,9 @@ const today: { index: number, factors: Partial<RiskFactors> }[] = [
 export async function seedTheatre(tx: Transaction, times: ScenarioTimes): Promise<void> {
   await seedLabels(tx)
   const list = seedId('list:today')
-  const startsAt = times.today.getTime() + 8.5 * 60 * minuteMs
+  const { startsAt: begins, endsAt } = todaysHours(times)
+  const startsAt = begins.getTime()
+  await tx.update(theatreLists).set({ startsAt: begins, endsAt }).where(eq(theatreLists.id, list))
   let minute = 0
   for (const [place, { index, factors }] of today.entries()) {
     const pathwayId = seedId(`pathway:${index}`)
@@ -35,6 +38,13 @@ export async function seedTheatre(tx: Transaction, times: ScenarioTimes): Promis
     minute += plannedMinutes + 10
   }
   await seedTimes(tx, times)
+}
+
+/** Today's list begins shortly after the moment of seeding, so that there is a day to come; where too little of the day is left, it keeps its usual hours. */
+function todaysHours(times: ScenarioTimes): { startsAt: Date, endsAt: Date } {
+  const [startsAt, endsAt] = [aroundNow(times, 20), aroundNow(times, 20 + 255)]
+  if (endsAt.getTime() - startsAt.getTime() >= 120 * minuteMs) return { startsAt, endsAt }
+  return { startsAt: new Date(times.today.getTime() + 8.5 * 60 * minuteMs), endsAt: new Date(times.today.getTime() + 17 * 60 * minuteMs) }
 }
 
 /** Yesterday's cases took their time: 19 to 27 minutes, the dense one 71. */
