@@ -1,5 +1,5 @@
 import { pipeline, Readable } from 'node:stream'
-import { parse } from 'csv-parse'
+import { CsvError, parse } from 'csv-parse'
 import { eq } from 'drizzle-orm'
 import { referralImportRows, referralImports, sites } from '#server/db/schema/index'
 import { may } from '#server/policies/pathway'
@@ -117,6 +117,7 @@ function fileProblem(error: unknown): DomainError | undefined {
   const { code, lines } = error as { code?: string, lines?: number }
   if (code === 'ERR_ENCODING_INVALID_ENCODED_DATA') return new DomainError('referral.invalid', 'The file is not written in UTF-8. Save it again as "CSV UTF-8".')
   if (code === 'CSV_MAX_RECORD_SIZE') return new DomainError('referral.invalid', `Line ${lines ?? '?'} is too long: a quotation mark may not be closed.`, { fields: [{ field: `lines.${lines ?? 0}`, code: 'too-long', message: 'Close the quotation mark, or shorten the line.' }] })
-  if (code?.startsWith('CSV_')) return new DomainError('referral.invalid', `Line ${lines ?? '?'} cannot be read: a quotation mark stands where none may.`, { fields: [{ field: `lines.${lines ?? 0}`, code: 'unreadable', message: 'Put the cell in quotation marks and double each mark in it.' }] })
+  // The class, not the code: some codes of the parser start with CSV_, some do not.
+  if (error instanceof CsvError) return new DomainError('referral.invalid', `Line ${lines ?? '?'} cannot be read: a quotation mark stands where none may.`, { fields: [{ field: `lines.${lines ?? 0}`, code: 'unreadable', message: 'Put the cell in quotation marks and double each mark in it.' }] })
   return undefined
 }
