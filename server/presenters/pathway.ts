@@ -41,8 +41,8 @@ function presentThread(row: Listed['rows'][number]) {
   }
 }
 
-export function presentChoices({ sites, surgeons, practices }: Awaited<ReturnType<typeof listChoices>>) {
-  return { sites: sites.map(({ id, name, zone }) => ({ id, name, zone })), surgeons: surgeons.map(({ id, name }) => ({ id, name })), practices: practices.map(({ id, name }) => ({ id, name })) }
+export function presentChoices({ sites, surgeons, practices }: Awaited<ReturnType<typeof listChoices>>, actor: Actor) {
+  return { sites: sites.map(({ id, name, zone }) => ({ id, name, zone, canAddReferral: may(actor, 'addReferral', id) })), surgeons: surgeons.map(({ id, name }) => ({ id, name })), practices: practices.map(({ id, name }) => ({ id, name })) }
 }
 export type PathwayChoices = ReturnType<typeof presentChoices>
 
