@@ -1,6 +1,7 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/vue-query'
 import type { MaybeRefOrGetter } from 'vue'
-import type { PathwayChoices, PathwayPage } from '#server/presenters/pathway'
+import type { PathwayChoices, PathwayPage, SavedFilters } from '#server/presenters/pathway'
+import type { SavedFilterBody } from '#shared/contracts/pathway'
 import type { CloseReason } from '#shared/domain/pathway/vocabulary'
 
 export const pathwayKeys = {
@@ -47,4 +48,16 @@ export function usePathwayActs(id: MaybeRefOrGetter<string>) {
   return {
     move: <M extends PathwayMove>(move: M, body: Moves[M] & { rowVersion: number }) => mutateAsync({ move, body }),
   }
+}
+
+/** The caller's own named filters of the horizon. A name given again takes the place of the filter that had it. */
+export function useSavedFilters() {
+  const api = useApi()
+  const client = useQueryClient()
+  const query = useQuery({ queryKey: ['pathway', 'filter'] as const, queryFn: () => api<SavedFilters>('/api/pathway/filter'), staleTime: 300_000 })
+  onServerPrefetch(() => query.suspense().catch(() => undefined))
+  const onSettled = () => client.invalidateQueries({ queryKey: ['pathway', 'filter'] })
+  const save = useMutation({ mutationFn: (body: SavedFilterBody) => api<SavedFilters>('/api/pathway/filter', { method: 'POST', body }), onSettled })
+  const forget = useMutation({ mutationFn: (id: string) => api<SavedFilters>(`/api/pathway/filter/${id}`, { method: 'DELETE' }), onSettled })
+  return { data: query.data, save: save.mutateAsync, forget: forget.mutateAsync }
 }

@@ -10,6 +10,7 @@ import type { listChoices } from '#server/services/pathway/list-choices'
 import type { listPathways } from '#server/services/pathway/list-pathways'
 import { actionsFor } from '#shared/domain/pathway/decide'
 import { nextStep, stageGroupOf } from '#shared/domain/pathway/next-step'
+import type { SavedFilterQuery } from '#shared/contracts/pathway'
 import type { Actor } from '#shared/domain/people/vocabulary'
 
 const iso = (at: Date | null | undefined) => at?.toISOString() ?? null
@@ -129,3 +130,8 @@ function presentNeed(need: Record<string, unknown>) {
   const reasons = Array.isArray(need.reasons) ? need.reasons as { sentence?: unknown, source?: unknown }[] : []
   return { inPerson: need.inPerson === true, latestSafeAt: typeof need.latestSafeAt === 'string' ? need.latestSafeAt : null, reasons: reasons.map(each => ({ sentence: String(each.sentence ?? ''), source: String(each.source ?? '') })), unknown: Array.isArray(need.unknown) ? need.unknown.map(String) : [] }
 }
+
+export function presentSavedFilters(rows: { id: string, name: string, query: SavedFilterQuery }[]) {
+  return { items: rows.map(({ id, name, query }) => ({ id, name, query: { group: query.group, show: query.show, surgeonId: query.surgeonId, siteId: query.siteId } })) }
+}
+export type SavedFilters = ReturnType<typeof presentSavedFilters>

@@ -23,3 +23,9 @@ export const reopenBody = z.strictObject({ reason: words(500), rowVersion })
 export const shareBody = z.strictObject({ practiceId: z.uuid().nullable(), rowVersion })
 export const decisionBody = z.strictObject({ decision: words(500), rowVersion })
 export const foundBody = z.strictObject({ found: words(1000), rowVersion })
+
+/** What of the horizon's filter is kept under a name: never a page mark. */
+const savedQuery = z.strictObject({ group: z.enum(stageGroups).optional(), show: z.enum(['late', 'escalated']).optional(), surgeonId: z.uuid().optional(), siteId: z.uuid().optional() })
+export type SavedFilterQuery = z.output<typeof savedQuery>
+export const savedFilterBody = z.strictObject({ name: z.string().trim().min(1, 'Give the filter a name.').max(40, 'At most 40 characters.'), query: savedQuery })
+export type SavedFilterBody = z.output<typeof savedFilterBody>

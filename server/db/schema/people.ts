@@ -1,5 +1,6 @@
 import { sql } from 'drizzle-orm'
 import { boolean, check, index, integer, jsonb, pgTable, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core'
+import type { SavedFilterQuery } from '#shared/contracts/pathway'
 import { roleNames } from '#shared/domain/people/vocabulary'
 import { id, instant, oneOf, rowVersion } from '#server/db/schema/columns'
 
@@ -65,6 +66,14 @@ export const sessions = pgTable('sessions', {
   revokedAt: instant('revoked_at'),
   userAgent: text('user_agent').notNull().default(''),
 }, table => [index('sessions_person').on(table.personId)])
+
+/** Filters of the horizon that a person gave a name. Only ids and words of the filter's own: nothing clinical. */
+export const savedFilters = pgTable('saved_filters', {
+  id: id(),
+  personId: uuid('person_id').notNull().references(() => people.id),
+  name: text('name').notNull(),
+  query: jsonb('query').$type<SavedFilterQuery>().notNull(),
+}, table => [uniqueIndex('saved_filters_once').on(table.personId, table.name)])
 
 export const passwordResets = pgTable('password_resets', {
   id: id(),
