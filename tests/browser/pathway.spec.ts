@@ -87,10 +87,13 @@ test('a hold is put on and released with the keyboard alone', async () => {
   const state = async () => (await product.pool.query('select state from pathways where id = $1', [new URL(page.url()).pathname.split('/')[2]])).rows[0].state
   await page.getByRole('button', { name: 'Put on hold' }).focus()
   await page.keyboard.press('Enter')
-  await page.getByLabel('Why it waits').focus()
+  await page.getByLabel('Why it waits').waitFor()
+  await page.keyboard.press('Tab')
   await page.keyboard.type('Waits for a scan')
-  await page.getByLabel('Look again on').fill('2030-01-10')
-  await page.getByLabel('Why it waits').press('Enter')
+  await page.keyboard.press('Tab')
+  // Day and month alike: the browser's own order of the two does not matter.
+  await page.keyboard.type('01012030')
+  await page.keyboard.press('Enter')
   await page.getByRole('button', { name: 'Release the hold' }).waitFor()
   expect(await state()).toBe('held')
   await page.getByRole('button', { name: 'Release the hold' }).press('Enter')
