@@ -46,6 +46,7 @@ async function fillNew(name: string): Promise<void> {
   await page.getByLabel('Month', { exact: true }).fill('4')
   await page.getByLabel('Year', { exact: true }).fill('1948')
   await page.getByLabel('Left eye', { exact: true }).check()
+  await page.getByLabel('Site', { exact: true }).selectOption({ label: 'Ferncombe Eye Unit' })
   await page.getByLabel('Referrer', { exact: true }).fill('Harbour Lane Opticians')
   await page.getByLabel('Why the patient is referred').fill('Glare at night.')
 }
