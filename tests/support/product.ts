@@ -43,8 +43,19 @@ export async function createTestDatabase() {
 /** `pid` is the served process: a test may look at its memory, or end it in the middle of something. */
 export interface Product { pid: number, url: string, fakes: RunningFakes, pool: pg.Pool, stop: () => Promise<void>, end: () => Promise<number | null>, log: () => string }
 
-/** The built product on a port of its own, with its own database and its own fakes. */
+/** The built product on a port of its own, with its own database and its own fakes. A port that another run took meanwhile is tried anew. */
 export async function startProduct(settings: Record<string, string> = {}): Promise<Product> {
+  for (let tries = 1; ; tries++) {
+    try {
+      return await startOnce(settings)
+    }
+    catch (error) {
+      if (tries === 3 || !String(error).includes('EADDRINUSE')) throw error
+    }
+  }
+}
+
+async function startOnce(settings: Record<string, string>): Promise<Product> {
   const database = await createTestDatabase()
   const port = await freePort()
   const url = `http://127.0.0.1:${port}`
